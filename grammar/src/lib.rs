@@ -1,0 +1,1 @@
+//! OpenQASM 3 text to tokens, a lossless tree, typed nodes

@@ -1,0 +1,1 @@
+//! The language server and the command line

@@ -1,0 +1,2 @@
+//! The `cantle` program.
+fn main() {}

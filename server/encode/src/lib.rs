@@ -1,0 +1,1 @@
+//! From a matrix to a circuit

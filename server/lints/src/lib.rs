@@ -1,0 +1,1 @@
+//! The lints, one file each, and their table

@@ -1,0 +1,1 @@
+//! What a source file means: names, constants, claims, circuits

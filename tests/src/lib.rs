@@ -1,0 +1,1 @@
+//! End-to-end checks: command line, protocol, editors, outside references
