@@ -1,1 +1,18 @@
-//! OpenQASM 3 text to tokens, a lossless tree, typed nodes
+//! OpenQASM 3 text to tokens, a lossless tree, typed nodes.
+//!
+//! [`parse`] is total: any text gives a tree whose text is that text, and a
+//! list of errors. The crate knows the form of the language only; what a name
+//! or a number means is for its users.
+
+mod kind;
+pub mod nodes;
+mod tree;
+
+pub use kind::{OpenQasm, SyntaxElement, SyntaxKind, SyntaxNode, SyntaxToken};
+pub use rowan::{TextRange, TextSize};
+pub use tree::{Insertion, Parse, SyntaxError};
+
+/// Parses a file.
+pub fn parse(text: &str) -> Parse {
+    tree::build(text)
+}
