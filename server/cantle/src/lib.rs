@@ -1,1 +1,11 @@
-//! The language server and the command line
+//! The language server and the command line.
+//!
+//! The only crate that knows the protocol, JSON, the disk and threads. It is
+//! kept thin: it converts, schedules and prints what the other crates find.
+
+pub mod error;
+pub mod lsp;
+
+mod convert;
+mod notifications;
+mod requests;
