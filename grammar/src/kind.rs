@@ -213,6 +213,7 @@ kinds! {
         RestOfLine "the rest of the line",
         CalibrationBody "a calibration body",
         UnclosedComment "an unclosed comment",
+        BrokenString "a broken string",
         UnknownText "text that is no part of the language",
         EndOfFile "the end of the file",
     }
@@ -375,10 +376,10 @@ impl SyntaxKind {
         matches!(self, Self::Whitespace | Self::LineComment | Self::BlockComment)
     }
 
-    /// Whether this token may stand between others without being seen by the
-    /// rules: trivia, and what the lexer has already reported.
+    /// Whether the rules do not see this token: trivia, and what the lexer has
+    /// reported already.
     pub(crate) fn is_skipped(self) -> bool {
-        self.is_trivia() || self == Self::UnclosedComment
+        self.is_trivia() || matches!(self, Self::UnclosedComment | Self::UnknownText)
     }
 }
 

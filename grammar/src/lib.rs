@@ -4,13 +4,18 @@
 //! list of errors. The crate knows the form of the language only; what a name
 //! or a number means is for its users.
 
+mod event;
 mod kind;
+mod lexer;
 pub mod nodes;
+mod parser;
+mod rules;
 mod tree;
 
 pub use kind::{OpenQasm, SyntaxElement, SyntaxKind, SyntaxNode, SyntaxToken};
+pub use parser::MAX_NESTING;
 pub use rowan::{TextRange, TextSize};
-pub use tree::{Insertion, Parse, SyntaxError};
+pub use tree::{Insertion, MAX_BYTES, Parse, SyntaxError};
 
 /// Parses a file.
 pub fn parse(text: &str) -> Parse {
