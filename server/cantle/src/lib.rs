@@ -3,6 +3,7 @@
 //! The only crate that knows the protocol, JSON, the disk and threads. It is
 //! kept thin: it converts, schedules and prints what the other crates find.
 
+pub mod disk;
 pub mod error;
 pub mod lsp;
 

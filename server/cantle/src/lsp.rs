@@ -30,6 +30,8 @@ mod outbox;
 mod pending;
 mod service;
 mod session;
+#[cfg(test)]
+pub(crate) mod tests;
 
 pub(crate) use client::ClientProfile;
 pub(crate) use document::Document;

@@ -12,6 +12,8 @@ use tower_lsp::lsp_types::{
 };
 
 use crate::error::Fail;
+#[cfg(test)]
+use crate::lsp::tests::probes;
 use crate::lsp::{ClientProfile, Context, Lane};
 
 /// A request that we serve.
@@ -62,7 +64,14 @@ impl Route {
 }
 
 /// All requests that we serve, apart from the session's own.
-pub(crate) static ROUTES: &[Route] = &[];
+pub(crate) static ROUTES: &[Route] = &[
+    #[cfg(test)]
+    Route::of::<probes::Panic>(),
+    #[cfg(test)]
+    Route::of::<probes::Toil>(),
+    #[cfg(test)]
+    Route::of::<probes::Text>(),
+];
 
 /// The answer to `initialize`.
 pub(crate) fn initialize_result(client: &ClientProfile) -> InitializeResult {
