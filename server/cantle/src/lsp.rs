@@ -65,7 +65,8 @@ pub fn serve_stdio() -> ExitCode {
             return ExitCode::from(2);
         }
     };
-    let orderly = runtime.block_on(serve(tokio::io::stdin(), tokio::io::stdout()));
+    let session = runtime.spawn(serve(tokio::io::stdin(), tokio::io::stdout()));
+    let orderly = runtime.block_on(session).unwrap_or(false);
     // A read of standard input cannot be interrupted and arithmetic ends only
     // at its next poll: neither may keep the process alive.
     runtime.shutdown_background();
