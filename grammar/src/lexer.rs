@@ -53,7 +53,13 @@ pub(crate) fn lex(text: &str) -> Lexed {
         let kind = match found {
             Ok(K::BitString) if mode == Mode::Path => K::StringLiteral,
             Ok(kind) => kind,
-            Err(()) => lexed.broken(text, &mut lexer),
+            Err(()) => {
+                let (kind, length) = lexed.broken(&text[start..], &lexer);
+                // The lexer may have read on in vain.
+                lexer = SyntaxKind::lexer(text);
+                lexer.bump(start + length);
+                kind
+            }
         };
         lexed.push(kind, &lexer, start);
         mode = lexed.after(kind, mode, &mut lexer);
@@ -120,24 +126,22 @@ impl Lexed {
         self.take(K::VersionNumber, lexer, length);
     }
 
-    /// Reports the text that no pattern takes, and gives it a kind.
-    fn broken(&mut self, text: &str, lexer: &mut Lexer<'_, SyntaxKind>) -> SyntaxKind {
+    /// Reports the text that no pattern takes; gives its kind and its length.
+    fn broken(&mut self, rest: &str, lexer: &Lexer<'_, SyntaxKind>) -> (SyntaxKind, usize) {
         let start = lexer.span().start;
-        let rest = &text[start..];
         if rest.starts_with("/*") {
-            let end = TextSize::from(text.len() as u32);
+            let end = range(start, start + rest.len()).end();
             let opening = range(start, start + 2);
             self.error(opening, "this comment is never closed".into(), Some((end, "*/")));
-            return K::UnclosedComment;
+            return (K::UnclosedComment, rest.len());
         }
         if let Some(quote @ ('"' | '\'')) = rest.chars().next() {
             let (length, closed) = broken_string(rest, quote);
-            lexer.bump((start + length).saturating_sub(lexer.span().end));
-            self.string_error(range(start, lexer.span().end), quote, closed);
-            return K::BrokenString;
+            self.string_error(range(start, start + length), quote, closed);
+            return (K::BrokenString, length);
         }
         self.error(range(start, lexer.span().end), unknown(lexer.slice()), None);
-        K::UnknownText
+        (K::UnknownText, lexer.slice().len())
     }
 
     fn string_error(&mut self, place: TextRange, quote: char, closed: bool) {

@@ -7,12 +7,14 @@
 mod event;
 mod kind;
 mod lexer;
+mod line_index;
 pub mod nodes;
 mod parser;
 mod rules;
 mod tree;
 
 pub use kind::{OpenQasm, SyntaxElement, SyntaxKind, SyntaxNode, SyntaxToken};
+pub use line_index::{Columns, LineColumn, LineIndex};
 pub use parser::MAX_NESTING;
 pub use rowan::{TextRange, TextSize};
 pub use tree::{Insertion, MAX_BYTES, Parse, SyntaxError};

@@ -193,6 +193,23 @@ fn skip_block(p: &mut Parser<'_>) {
     m.complete(p, K::ErrorNode);
 }
 
+/// Skips a statement that is nested too deep, with its blocks and with every
+/// `else` that belongs to it.
+fn skip_body(p: &mut Parser<'_>) {
+    loop {
+        bump_as_error(p);
+        if p.previous() != K::Semicolon {
+            skip_statement(p);
+        }
+        while p.at(K::LeftBrace) {
+            skip_block(p);
+        }
+        if !p.at(K::ElseKw) {
+            break;
+        }
+    }
+}
+
 /// Puts tokens into an error node until `stop` says so, which is told how many
 /// brackets are open; no node if it stops at once.
 fn skip(p: &mut Parser<'_>, stop: impl Fn(&Parser<'_>, usize) -> bool) {

@@ -236,9 +236,13 @@ fn signature(p: &mut Parser<'_>, parameter: impl FnMut(&mut Parser<'_>) -> bool)
 }
 
 fn def_parameter(p: &mut Parser<'_>) -> bool {
+    named_parameter(p, |p| name(p, "a name for this parameter"))
+}
+
+fn named_parameter(p: &mut Parser<'_>, name: impl Fn(&mut Parser<'_>) -> bool) -> bool {
     let m = p.start();
     let is_old = p.at_any(&[K::QregKw, K::CregKw]);
-    let typed = parameter_type(p) && name(p, "a name for this parameter");
+    let typed = parameter_type(p) && name(p);
     if typed && is_old {
         opt_designator(p);
     }
@@ -299,7 +303,7 @@ fn calibration_body(p: &mut Parser<'_>, place: &str) {
 pub(super) fn defcal(p: &mut Parser<'_>, m: Marker) {
     p.bump();
     let start = p.position();
-    calibration_name(p, K::Name, "the name of what is calibrated");
+    calibration_name(p, "the name of what is calibrated");
     if p.at(K::LeftParen) {
         signature(p, defcal_parameter);
     }
@@ -312,7 +316,7 @@ pub(super) fn defcal(p: &mut Parser<'_>, m: Marker) {
             p.bump();
             return true;
         }
-        calibration_name(p, K::Name, "an operand")
+        calibration_name(p, "an operand")
     });
     operands_without_comma(p);
     operands.complete(p, K::DefcalOperands);
@@ -322,14 +326,14 @@ pub(super) fn defcal(p: &mut Parser<'_>, m: Marker) {
     m.complete(p, K::DefcalStatement);
 }
 
-fn calibration_name(p: &mut Parser<'_>, node: SyntaxKind, what: &str) -> bool {
+fn calibration_name(p: &mut Parser<'_>, what: &str) -> bool {
     let is_type = at_scalar(p) || p.at_any(&[K::QubitKw, K::ArrayKw, K::QregKw, K::CregKw]);
     let is_word = p.at(K::Identifier) || p.current().is_keyword();
     if !is_word || (is_type && !p.at(K::StretchKw)) {
         p.expected(what);
         return false;
     }
-    opt_wrapped(p, p.current(), node)
+    opt_wrapped(p, p.current(), K::Name)
 }
 
 fn defcal_parameter(p: &mut Parser<'_>) -> bool {
@@ -340,7 +344,7 @@ fn defcal_parameter(p: &mut Parser<'_>) -> bool {
             false
         };
     }
-    def_parameter(p)
+    named_parameter(p, |p| calibration_name(p, "a name for this parameter"))
 }
 
 /// Operands that follow each other without the comma between them.

@@ -158,7 +158,7 @@ fn body(p: &mut Parser<'_>, place: &str) {
         K::RightBrace | K::EndOfFile => p.expected(&format!("a block or a statement {place}")),
         _ if !p.fits(1) => {
             p.too_deep();
-            skip_statement(p);
+            skip_body(p);
         }
         _ => p.nested(statement),
     }
@@ -243,7 +243,9 @@ fn switch_statement(p: &mut Parser<'_>, m: Marker) {
         inside_parens(p, "after this value");
     }
     if p.expect(K::LeftBrace, "and the cases after the value") {
-        while !p.at(K::RightBrace) && !p.at_end() && switch_item(p) {}
+        while !p.at(K::RightBrace) && !p.at_end() {
+            switch_item(p);
+        }
         p.expect(K::RightBrace, "that closes this `switch`");
     } else {
         skip_statement(p);
@@ -253,7 +255,7 @@ fn switch_statement(p: &mut Parser<'_>, m: Marker) {
 
 /// One case. Anything else in its place is reported and becomes a statement in
 /// an error node, so that it stays visible.
-fn switch_item(p: &mut Parser<'_>) -> bool {
+fn switch_item(p: &mut Parser<'_>) {
     let m = p.start();
     match p.current() {
         K::CaseKw => {
@@ -275,12 +277,11 @@ fn switch_item(p: &mut Parser<'_>) -> bool {
             if p.fits(1) {
                 p.nested(statement);
             } else {
-                skip_statement(p);
+                skip_body(p);
             }
             m.complete(p, K::ErrorNode);
         }
     }
-    true
 }
 
 /// A statement of a single word.
