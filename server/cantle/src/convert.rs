@@ -1,5 +1,7 @@
 //! Between the protocol's types and ours. Nothing else converts positions.
 
 mod position;
+mod to_lsp;
 
 pub(crate) use position::{Encoding, offset, position, range, text_range};
+pub(crate) use to_lsp::{SOURCE, diagnostic, location, workspace_edit};

@@ -7,6 +7,8 @@ pub mod disk;
 pub mod error;
 pub mod lsp;
 
+mod checks;
+mod config;
 mod convert;
 mod notifications;
 mod requests;

@@ -28,13 +28,14 @@ mod intake;
 mod lanes;
 mod outbox;
 mod pending;
+mod refresh;
 mod service;
 mod session;
 #[cfg(test)]
 pub(crate) mod tests;
 
 pub(crate) use client::ClientProfile;
-pub(crate) use document::Document;
+pub(crate) use document::{Document, edited, path_of};
 pub(crate) use lanes::Lane;
 pub(crate) use session::{Context, Session};
 

@@ -16,6 +16,8 @@ pub(crate) struct ClientProfile {
     pub applies_edits: bool,
     /// `WorkspaceEdit.documentChanges` is understood.
     pub document_changes: bool,
+    /// Diagnostics may point to other places.
+    pub related_information: bool,
     /// Hovers may be markdown.
     pub markdown: bool,
     /// Document symbols may be nested.
@@ -36,6 +38,7 @@ impl ClientProfile {
             resolves_edits: names("textDocument/codeAction/resolveSupport/properties", "edit"),
             applies_edits: flag("workspace/applyEdit"),
             document_changes: flag("workspace/workspaceEdit/documentChanges"),
+            related_information: flag("textDocument/publishDiagnostics/relatedInformation"),
             markdown: names("textDocument/hover/contentFormat", "markdown"),
             nested_symbols: flag("textDocument/documentSymbol/hierarchicalDocumentSymbolSupport"),
         }

@@ -1,15 +1,19 @@
 //! One state of one open text, and what is known about it.
 
-use std::sync::{Arc, Mutex, Weak};
+use std::path::Path;
+use std::sync::{Arc, Mutex, OnceLock, Weak};
 
 use operator::Budget;
+use program::{Finding, Limits, Program};
 use ropey::Rope;
 use tower_lsp::lsp_types::{TextDocumentContentChangeEvent, Url};
 
 use super::locked;
 use crate::convert::{self, Encoding};
+use crate::disk::{self, Disk};
 
-/// An open text at one version. Immutable: an edit makes a new one.
+/// An open text at one version. Immutable but for what is found out about
+/// it: an edit makes a new one.
 #[derive(Debug)]
 pub(crate) struct Document {
     /// The client's name for it.
@@ -18,6 +22,14 @@ pub(crate) struct Document {
     pub version: i32,
     /// The text.
     pub text: Rope,
+    /// Our name for the file.
+    pub path: Arc<str>,
+    files: Disk,
+    program: OnceLock<Program>,
+    /// What the names lane found, once it has.
+    pub names: OnceLock<Vec<Finding>>,
+    /// What the arithmetic found, once it has.
+    pub operators: OnceLock<Vec<Finding>>,
     live: Mutex<Live>,
 }
 
@@ -29,23 +41,41 @@ struct Live {
 }
 
 impl Document {
-    /// A text as the client opened it.
-    pub(crate) fn new(uri: Url, version: i32, text: Rope) -> Self {
-        Document { uri, version, text, live: Mutex::default() }
+    /// A state of a text. `path` is from [`path_of`].
+    pub(crate) fn new(uri: Url, path: Arc<str>, version: i32, text: Rope, files: Disk) -> Self {
+        Document {
+            uri,
+            version,
+            text,
+            path,
+            files,
+            program: OnceLock::new(),
+            names: OnceLock::new(),
+            operators: OnceLock::new(),
+            live: Mutex::default(),
+        }
     }
 
-    /// The text after `changes`, which apply one after another.
-    pub(crate) fn edited(
-        &self,
-        version: i32,
-        changes: &[TextDocumentContentChangeEvent],
-        encoding: Encoding,
-    ) -> Self {
-        let mut text = self.text.clone();
-        for change in changes {
-            apply(&mut text, change, encoding);
-        }
-        Document::new(self.uri.clone(), version, text)
+    /// The analysis of the text; made by whoever asks first, which takes a
+    /// while, so only handlers in a lane may ask.
+    pub(crate) fn program(&self) -> &Program {
+        self.program.get_or_init(|| {
+            let text: Arc<str> = self.text.to_string().into();
+            Program::analyse(&self.path, text, &self.files, &Limits::default())
+        })
+    }
+
+    /// Whether the analysis read the file at `path`, misses an include, or
+    /// is still to be made from files as they were.
+    pub(crate) fn depends_on(&self, path: &str) -> bool {
+        let Some(program) = self.program.get() else { return true };
+        let reads = program.files().iter().skip(1).any(|file| file.path == path);
+        reads || program.findings().iter().any(|finding| finding.code == "include-not-found")
+    }
+
+    /// What has been found so far.
+    pub(crate) fn findings(&self) -> impl Iterator<Item = &Finding> {
+        self.names.get().into_iter().chain(self.operators.get()).flatten()
     }
 
     /// Ties a computation to this state of the text: it is stopped when the
@@ -71,16 +101,33 @@ impl Document {
     }
 }
 
-/// Applies one change. `rangeLength` is ignored: clients count it in
-/// different units and the range says everything.
-fn apply(text: &mut Rope, change: &TextDocumentContentChangeEvent, encoding: Encoding) {
-    let Some(range) = change.range else {
-        *text = Rope::from_str(&change.text);
-        return;
-    };
-    let range = convert::text_range(text, range, encoding);
-    let start = text.byte_to_char(range.start().into());
-    let end = text.byte_to_char(range.end().into());
-    text.remove(start..end);
-    text.insert(start, &change.text);
+/// Our name for the file a client means: one name for one file, whatever
+/// way the client spells it. A text that is no file is called by its URI.
+pub(crate) fn path_of(uri: &Url) -> Arc<str> {
+    match uri.to_file_path() {
+        Ok(path) => disk::identity(Path::new(&path)).into(),
+        Err(()) => uri.as_str().into(),
+    }
+}
+
+/// The text after `changes`, which apply one after another. `rangeLength`
+/// is ignored: clients count it in different units and the range says it all.
+pub(crate) fn edited(
+    text: &Rope,
+    changes: &[TextDocumentContentChangeEvent],
+    encoding: Encoding,
+) -> Rope {
+    let mut text = text.clone();
+    for change in changes {
+        let Some(range) = change.range else {
+            text = Rope::from_str(&change.text);
+            continue;
+        };
+        let range = convert::text_range(&text, range, encoding);
+        let start = text.byte_to_char(range.start().into());
+        let end = text.byte_to_char(range.end().into());
+        text.remove(start..end);
+        text.insert(start, &change.text);
+    }
+    text
 }

@@ -19,6 +19,7 @@ use super::lanes::contained;
 use super::outbox::{Outbox, Wire};
 use super::session::Phase;
 use super::{ClientProfile, Session};
+use crate::config::Settings;
 use crate::error::Fail;
 use crate::notifications::{self, Notice};
 use crate::requests::{self, Route};
@@ -94,7 +95,8 @@ impl Service {
         }
         let client = ClientProfile::read(params);
         let answer = requests::initialize_result(&client);
-        self.session.begin(client);
+        let settings = Settings::read(&params["initializationOptions"]);
+        self.session.begin(client, settings);
         serde_json::to_value(answer).map_err(|error| {
             tracing::error!("initialize: {error}");
             Fail::Internal

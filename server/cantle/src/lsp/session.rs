@@ -4,12 +4,16 @@ use std::collections::BTreeMap;
 use std::sync::{Arc, Mutex};
 
 use operator::Budget;
+use ropey::Rope;
 use tower_lsp::lsp_types::Url;
 
+use super::document::path_of;
 use super::lanes::Lanes;
 use super::outbox::Outbox;
 use super::pending::Pending;
-use super::{ClientProfile, Document, locked};
+use super::{ClientProfile, Document, locked, refresh};
+use crate::config::Settings;
+use crate::disk::Disk;
 use crate::error::Fail;
 
 /// One client's session. Shared by all handlers; what changes is behind one
@@ -39,6 +43,16 @@ pub(crate) enum Phase {
 struct State {
     phase: Phase,
     world: World,
+    /// The open texts as includes see them, by our name of the file.
+    open: Arc<BTreeMap<String, Rope>>,
+}
+
+impl State {
+    /// The files that an analysis started now may read.
+    fn disk(&self) -> Disk {
+        let search_path = self.world.settings.include_path.clone();
+        Disk { search_path, open: self.open.clone(), ..Disk::default() }
+    }
 }
 
 /// Everything a handler may read, at one moment.
@@ -46,6 +60,8 @@ struct State {
 pub(crate) struct World {
     /// What the client can do.
     pub client: Arc<ClientProfile>,
+    /// What the user has set.
+    pub settings: Arc<Settings>,
     /// The open texts.
     pub documents: Arc<BTreeMap<Url, Arc<Document>>>,
 }
@@ -84,7 +100,8 @@ impl Session {
     /// What a request that arrives now sees.
     pub(super) fn context(self: &Arc<Self>) -> Context {
         let world = locked(&self.state).world.clone();
-        Context { world, budget: Arc::default(), session: self.clone() }
+        let budget = Arc::new(world.settings.budget());
+        Context { world, budget, session: self.clone() }
     }
 
     /// Where the session is.
@@ -93,8 +110,9 @@ impl Session {
     }
 
     /// Begins serving a client.
-    pub(super) fn begin(&self, client: ClientProfile) {
+    pub(super) fn begin(&self, client: ClientProfile, settings: Settings) {
         let mut state = locked(&self.state);
+        state.world.settings = Arc::new(settings);
         state.phase = Phase::Ready;
         state.world.client = Arc::new(client);
     }
@@ -114,17 +132,57 @@ impl Session {
         locked(&self.state).world.client.clone()
     }
 
+    /// The settings in force.
+    pub(crate) fn settings(&self) -> Arc<Settings> {
+        locked(&self.state).world.settings.clone()
+    }
+
+    /// Puts other settings in force; every text is checked again by them.
+    pub(crate) fn set(self: &Arc<Self>, settings: Settings) {
+        locked(&self.state).world.settings = Arc::new(settings);
+        self.renew(|_| true);
+    }
+
     /// Puts a new state of a text in place of the one before, whose
-    /// computations end.
-    pub(crate) fn put(&self, document: Document) {
-        let document = Arc::new(document);
+    /// computations end, and starts its checks and those of the texts that
+    /// include it.
+    pub(crate) fn put(self: &Arc<Self>, uri: Url, version: i32, text: Rope) {
+        let path = match self.document(&uri) {
+            Some(before) => before.path.clone(),
+            None => path_of(&uri),
+        };
+        let document = {
+            let mut state = locked(&self.state);
+            Arc::make_mut(&mut state.open).insert(path.to_string(), text.clone());
+            Arc::new(Document::new(uri.clone(), path.clone(), version, text, state.disk()))
+        };
+        self.replace(document);
+        self.renew(|other| other.uri != uri && other.depends_on(&path));
+    }
+
+    /// Makes a state the newest one and starts its checks.
+    fn replace(self: &Arc<Self>, document: Arc<Document>) {
         let before = {
             let mut state = locked(&self.state);
             let documents = Arc::make_mut(&mut state.world.documents);
-            documents.insert(document.uri.clone(), document)
+            documents.insert(document.uri.clone(), document.clone())
         };
         if let Some(before) = before {
             before.end();
+        }
+        refresh::start(self, document);
+    }
+
+    /// Looks anew at the texts that `which` picks: what they were read
+    /// together with has changed.
+    pub(crate) fn renew(self: &Arc<Self>, which: impl Fn(&Document) -> bool) {
+        let (documents, disk) = {
+            let state = locked(&self.state);
+            (state.world.documents.clone(), state.disk())
+        };
+        for old in documents.values().filter(|document| which(document)) {
+            let (uri, path, text) = (old.uri.clone(), old.path.clone(), old.text.clone());
+            self.replace(Arc::new(Document::new(uri, path, old.version, text, disk.clone())));
         }
     }
 
@@ -134,13 +192,19 @@ impl Session {
     }
 
     /// Forgets a text that the client has closed.
-    pub(crate) fn close_document(&self, uri: &Url) {
+    pub(crate) fn close_document(self: &Arc<Self>, uri: &Url) {
         let before = {
             let mut state = locked(&self.state);
-            Arc::make_mut(&mut state.world.documents).remove(uri)
+            let before = Arc::make_mut(&mut state.world.documents).remove(uri);
+            if let Some(before) = &before {
+                Arc::make_mut(&mut state.open).remove(&*before.path);
+            }
+            before
         };
         if let Some(before) = before {
             before.end();
+            refresh::clear(self, uri);
+            self.renew(|other| other.depends_on(&before.path));
         }
     }
 
