@@ -4,23 +4,24 @@ use serde_json::{Value, json};
 
 use super::driver::{Editor, uri};
 
-/// Sends bytes and returns every answer up to that of a probe sent after.
-async fn answers(bytes: &[u8]) -> Vec<Value> {
+/// Sends bytes, checks that exactly `count` answers come of them and that
+/// the session goes on; the answers.
+async fn answers(bytes: &[u8], count: usize) -> Vec<Value> {
+    let what = String::from_utf8_lossy(&bytes[..bytes.len().min(80)]).into_owned();
     let mut editor = Editor::start(json!({})).await;
     editor.open("a", "still here").await;
     editor.raw(bytes).await;
-    let probe = editor.post("cantle/test/text", json!({ "uri": uri("a") })).await;
+    assert_eq!(editor.text("a").await.0, "still here", "{what}");
+    let is_answer = |message: &Value| message.get("method").is_none();
     let mut found = Vec::new();
-    loop {
-        let message = editor.read().await.expect("the session goes on");
-        if message["id"] == probe {
-            assert_eq!(message["result"]["text"], "still here");
-            return found;
-        }
-        if message.get("method").is_none() {
-            found.push(message);
-        }
+    for _ in 0..count {
+        found.push(editor.wait(is_answer).await);
     }
+    editor.ask("shutdown", Value::Null).await;
+    editor.tell("exit", Value::Null).await;
+    let (rest, orderly) = editor.finish().await;
+    assert!(orderly && !rest.iter().any(is_answer), "{what}: {rest:?}");
+    found
 }
 
 fn framed(body: &str) -> Vec<u8> {
@@ -55,14 +56,13 @@ async fn bad_bodies() {
             -32602,
         ),
     ] {
-        let found = answers(&framed(body)).await;
-        assert_eq!(found.len(), 1, "{body}: {found:?}");
+        let found = answers(&framed(body), 1).await;
         assert_eq!((&found[0]["id"], &found[0]["error"]["code"]), (&id, &json!(code)), "{body}");
     }
-    let not_utf8 = answers(b"Content-Length: 3\r\n\r\n\"\xff\"").await;
+    let not_utf8 = answers(b"Content-Length: 3\r\n\r\n\"\xff\"", 1).await;
     assert_eq!(not_utf8[0]["error"]["code"], -32700);
-    let deep = answers(&framed(&"[".repeat(100_000))).await;
-    assert_eq!((deep.len(), &deep[0]["error"]["code"]), (1, &json!(-32700)));
+    let deep = answers(&framed(&"[".repeat(100_000)), 1).await;
+    assert_eq!(deep[0]["error"]["code"], -32700);
 }
 
 #[tokio::test]
@@ -87,9 +87,7 @@ async fn bad_headers() {
             0,
         ),
     ] {
-        let found = answers(&bytes).await;
-        let text = String::from_utf8_lossy(&bytes[..bytes.len().min(60)]).into_owned();
-        assert_eq!(found.len(), refusals, "{text:?}: {found:?}");
+        let found = answers(&bytes, refusals).await;
         assert!(found.iter().all(|answer| answer["error"]["code"] == -32700), "{found:?}");
     }
 }
