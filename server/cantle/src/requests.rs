@@ -4,6 +4,11 @@
 //! announces is built from the same list, so nothing is announced that is
 //! not served.
 
+mod completion;
+mod definition;
+mod references;
+mod symbols;
+
 use serde_json::Value;
 use tower_lsp::lsp_types::request::Request;
 use tower_lsp::lsp_types::{
@@ -65,6 +70,10 @@ impl Route {
 
 /// All requests that we serve, apart from the session's own.
 pub(crate) static ROUTES: &[Route] = &[
+    Route::of::<completion::Completion>(),
+    Route::of::<definition::Definition>(),
+    Route::of::<references::References>(),
+    Route::of::<symbols::Symbols>(),
     #[cfg(test)]
     Route::of::<probes::Panic>(),
     #[cfg(test)]

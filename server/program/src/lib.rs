@@ -20,6 +20,7 @@ mod finding;
 mod limits;
 mod model;
 mod program;
+pub mod queries;
 mod symbols;
 
 pub use file::{FileProblem, Files, NoFiles, SourceFile};

@@ -3,9 +3,10 @@
 use std::collections::BTreeMap;
 use std::sync::{Arc, Mutex};
 
+use grammar::TextSize;
 use operator::Budget;
 use ropey::Rope;
-use tower_lsp::lsp_types::Url;
+use tower_lsp::lsp_types::{TextDocumentPositionParams, Url};
 
 use super::document::path_of;
 use super::lanes::Lanes;
@@ -13,6 +14,7 @@ use super::outbox::Outbox;
 use super::pending::Pending;
 use super::{ClientProfile, Document, locked, refresh};
 use crate::config::Settings;
+use crate::convert;
 use crate::disk::Disk;
 use crate::error::Fail;
 
@@ -84,6 +86,18 @@ impl Context {
         let document = document.ok_or_else(|| Fail::BadParams(format!("{uri} is not open")))?;
         document.bind(&self.budget);
         Ok(document)
+    }
+
+    /// The open text and the offset in it that a request speaks of.
+    pub(crate) fn place(
+        &self,
+        params: &TextDocumentPositionParams,
+    ) -> Result<(Arc<Document>, TextSize), Fail> {
+        let document = self.document(&params.text_document.uri)?;
+        let encoding = self.world.client.encoding;
+        let offset = convert::offset(&document.text, params.position, encoding);
+        let offset = TextSize::new(u32::try_from(offset).unwrap_or(u32::MAX));
+        Ok((document, offset))
     }
 }
 
