@@ -52,6 +52,7 @@ pub(crate) fn lex(text: &str) -> Lexed {
         let start = lexer.span().start;
         let kind = match found {
             Ok(K::BitString) if mode == Mode::Path => K::StringLiteral,
+            Ok(kind) if mode == Mode::Defcal && is_plain_name(kind) => K::Identifier,
             Ok(kind) => kind,
             Err(()) => {
                 let (kind, length) = lexed.broken(&text[start..], &lexer);
@@ -160,6 +161,17 @@ impl Lexed {
     fn error(&mut self, range: TextRange, message: String, fix: Option<(TextSize, &str)>) {
         let fix = fix.map(|(offset, text)| Insertion { offset, text: text.into() });
         self.errors.push(SyntaxError { range, message, fix: fix.into_iter().collect() });
+    }
+}
+
+/// Whether this word, reserved elsewhere, is a plain name in the head of a
+/// `defcal`: that knows some types and three quantum statements only.
+fn is_plain_name(kind: SyntaxKind) -> bool {
+    match kind {
+        K::QregKw | K::CregKw | K::QubitKw | K::BoolKw | K::BitKw | K::IntKw | K::UintKw => false,
+        K::AngleKw | K::FloatKw | K::ComplexKw | K::ArrayKw | K::DurationKw => false,
+        K::MeasureKw | K::DelayKw | K::ResetKw | K::HashDimKw | K::HashPragmaKw => false,
+        kind => kind.is_keyword(),
     }
 }
 

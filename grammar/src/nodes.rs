@@ -155,7 +155,8 @@ impl Root {
 macro_rules! name_views {
     ($($name:ident)*) => {
         $(impl $name {
-            /// The name itself. In a calibration head this can be a keyword.
+            /// The name itself. After `defcal` this can be one of the keywords
+            /// `measure`, `reset` and `delay`.
             pub fn token(&self) -> Option<SyntaxToken> {
                 self.0.first_token()
             }

@@ -247,6 +247,11 @@ impl<'t> Parser<'t> {
 
     /// Reports that something else was expected instead of the next token.
     pub(crate) fn expected(&mut self, what: &str) {
+        if self.at(K::BrokenString) {
+            // The lexer has said what is wrong here.
+            self.last_error = Some(self.position);
+            return;
+        }
         let found = match self.current() {
             K::EndOfFile => "the file ends here".to_owned(),
             kind if kind.spelling().is_some() => format!("found {}", kind.noun()),

@@ -334,7 +334,9 @@ fn head_end(definition: &SyntaxNode, body: Option<Block>) -> TextSize {
         Some(body) => body.syntax().prev_sibling_or_token(),
         None => definition.last_child_or_token(),
     };
-    let skip = |element: &crate::SyntaxElement| element.kind().is_trivia();
+    let skip = |element: &crate::SyntaxElement| {
+        element.kind().is_trivia() || element.text_range().is_empty()
+    };
     let mut before = last;
     while let Some(element) = before.clone().filter(skip) {
         before = element.prev_sibling_or_token();

@@ -236,13 +236,9 @@ fn signature(p: &mut Parser<'_>, parameter: impl FnMut(&mut Parser<'_>) -> bool)
 }
 
 fn def_parameter(p: &mut Parser<'_>) -> bool {
-    named_parameter(p, |p| name(p, "a name for this parameter"))
-}
-
-fn named_parameter(p: &mut Parser<'_>, name: impl Fn(&mut Parser<'_>) -> bool) -> bool {
     let m = p.start();
     let is_old = p.at_any(&[K::QregKw, K::CregKw]);
-    let typed = parameter_type(p) && name(p);
+    let typed = parameter_type(p) && name(p, "a name for this parameter");
     if typed && is_old {
         opt_designator(p);
     }
@@ -298,12 +294,15 @@ fn calibration_body(p: &mut Parser<'_>, place: &str) {
     }
 }
 
-/// `defcal name(…) operands -> TYPE { … }`. Most keywords are plain names in
-/// its head.
+/// `defcal name(…) operands -> TYPE { … }`
 pub(super) fn defcal(p: &mut Parser<'_>, m: Marker) {
     p.bump();
     let start = p.position();
-    calibration_name(p, "the name of what is calibrated");
+    if p.at_any(&[K::MeasureKw, K::ResetKw, K::DelayKw]) {
+        opt_wrapped(p, p.current(), K::Name);
+    } else {
+        name(p, "the name of what is calibrated");
+    }
     if p.at(K::LeftParen) {
         signature(p, defcal_parameter);
     }
@@ -311,29 +310,13 @@ pub(super) fn defcal(p: &mut Parser<'_>, m: Marker) {
     if p.at_any(&[K::LeftBrace, K::Arrow]) {
         p.expected("the operands of this calibration");
     }
-    items(p, K::LeftBrace, |p| {
-        if p.at(K::HardwareQubit) {
-            p.bump();
-            return true;
-        }
-        calibration_name(p, "an operand")
-    });
+    items(p, K::LeftBrace, |p| p.eat(K::HardwareQubit) || name(p, "an operand"));
     operands_without_comma(p);
     operands.complete(p, K::DefcalOperands);
     opt_return_signature(p);
     forbidden_in_head(p, start);
     calibration_body(p, "and the body after the head of this calibration");
     m.complete(p, K::DefcalStatement);
-}
-
-fn calibration_name(p: &mut Parser<'_>, what: &str) -> bool {
-    let is_type = at_scalar(p) || p.at_any(&[K::QubitKw, K::ArrayKw, K::QregKw, K::CregKw]);
-    let is_word = p.at(K::Identifier) || p.current().is_keyword();
-    if !is_word || (is_type && !p.at(K::StretchKw)) {
-        p.expected(what);
-        return false;
-    }
-    opt_wrapped(p, p.current(), K::Name)
 }
 
 fn defcal_parameter(p: &mut Parser<'_>) -> bool {
@@ -344,7 +327,7 @@ fn defcal_parameter(p: &mut Parser<'_>) -> bool {
             false
         };
     }
-    named_parameter(p, |p| calibration_name(p, "a name for this parameter"))
+    def_parameter(p)
 }
 
 /// Operands that follow each other without the comma between them.

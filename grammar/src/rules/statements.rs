@@ -131,7 +131,7 @@ pub(super) fn block(p: &mut Parser<'_>, place: &str) {
     p.bump();
     p.nested(block_statements);
     if !p.eat(K::RightBrace) {
-        p.expect(K::RightBrace, "that closes this block");
+        p.expect(K::RightBrace, "to close this block");
         p.brace_was_missing();
     }
     m.complete(p, K::Block);
@@ -175,7 +175,7 @@ fn box_statement(p: &mut Parser<'_>, m: Marker) {
 /// `if (condition) … else …`
 fn if_statement(p: &mut Parser<'_>, m: Marker) {
     p.bump();
-    condition(p, "`if`");
+    condition(p, "and a condition after `if`", "after this condition");
     body(p, "after the condition");
     if p.at(K::ElseKw) {
         let m = p.start();
@@ -186,9 +186,10 @@ fn if_statement(p: &mut Parser<'_>, m: Marker) {
     m.complete(p, K::IfStatement);
 }
 
-fn condition(p: &mut Parser<'_>, word: &str) {
-    if p.expect(K::LeftParen, &format!("and a condition after {word}")) {
-        inside_parens(p, "after this condition");
+/// A value in parentheses, which are missed but not needed to go on.
+fn condition(p: &mut Parser<'_>, open: &str, close: &str) {
+    if p.expect(K::LeftParen, open) {
+        inside_parens(p, close);
     } else if expressions::at_expression(p) {
         expression(p);
     }
@@ -231,7 +232,7 @@ fn iterated(p: &mut Parser<'_>) {
 /// `while (condition) body`
 fn while_statement(p: &mut Parser<'_>, m: Marker) {
     p.bump();
-    condition(p, "`while`");
+    condition(p, "and a condition after `while`", "after this condition");
     body(p, "after the condition");
     m.complete(p, K::WhileStatement);
 }
@@ -239,14 +240,12 @@ fn while_statement(p: &mut Parser<'_>, m: Marker) {
 /// `switch (selector) { … }`
 fn switch_statement(p: &mut Parser<'_>, m: Marker) {
     p.bump();
-    if p.expect(K::LeftParen, "and a value after `switch`") {
-        inside_parens(p, "after this value");
-    }
+    condition(p, "and a value after `switch`", "after this value");
     if p.expect(K::LeftBrace, "and the cases after the value") {
         while !p.at(K::RightBrace) && !p.at_end() {
             switch_item(p);
         }
-        p.expect(K::RightBrace, "that closes this `switch`");
+        p.expect(K::RightBrace, "to close this `switch`");
     } else {
         skip_statement(p);
     }
@@ -360,9 +359,7 @@ fn gate_call(p: &mut Parser<'_>, m: Marker) {
 fn gate_call_tail(p: &mut Parser<'_>, m: Marker) {
     opt_designator(p);
     operands(p, "after the operands of this gate call");
-    if p.eat(K::Arrow) {
-        operand(p);
-    }
+    opt_target(p);
     end_statement(p, m, K::GateCall, "after this gate call");
 }
 
@@ -429,10 +426,18 @@ fn reset(p: &mut Parser<'_>, m: Marker) {
 fn measure(p: &mut Parser<'_>, m: Marker) {
     measurement(p);
     one_operand(p, "`measure`");
+    opt_target(p);
+    end_statement(p, m, K::MeasureStatement, "after this measurement");
+}
+
+/// `-> target`
+fn opt_target(p: &mut Parser<'_>) {
     if p.eat(K::Arrow) {
+        if p.at(K::HardwareQubit) {
+            p.error("the result of a measurement goes into bits");
+        }
         operand(p);
     }
-    end_statement(p, m, K::MeasureStatement, "after this measurement");
 }
 
 fn one_operand(p: &mut Parser<'_>, word: &str) {

@@ -1,0 +1,3 @@
+x q;
+/* never closed */ y q;
+/*/ z q;

@@ -1,0 +1,2 @@
+x q; ` x $ 0; #nothing
+é; a\b;

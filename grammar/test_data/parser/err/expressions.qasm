@@ -1,0 +1,14 @@
+x = 1 + ;
+x = + a;
+x = f(,);
+x = a[];
+x = a[0:2:];
+x = {1};
+x = 1 + measure q;
+x = (a)(b);
+let a = ;
+f(a b);
+measure(q);
+measure q, r;
+x[{}] = 1;
+y q;

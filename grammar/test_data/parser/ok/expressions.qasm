@@ -1,0 +1,13 @@
+a = b;
+a[0][1] **= f(1,);
+f(1)[0] + 2;
+f;
+g -q;
+a = b ++ c;
+b = f(1) q;
+return f q;
+x = int[8](y) + array[int, 2](z);
+int[8](x);
+x = durationof({ x q; });
+x = i in {0, 3};
+x[::2, 1:, :, a:b:c];

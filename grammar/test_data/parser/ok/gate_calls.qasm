@@ -1,0 +1,10 @@
+qubit[2] q;
+ctrl(2) @ negctrl @ inv @ pow(-0.5) @ U(a, b + 1, c) q[0], q[1:2], q[{0, 1}], $3,;
+x q;
+x() q;
+x(1)[10ns] q;
+x[10ns] q;
+gphase(pi);
+gphase(pi) q;
+ctrl @ gphase(pi) q;
+x q -> c;
