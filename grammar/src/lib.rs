@@ -16,7 +16,7 @@ mod tree;
 pub use kind::{OpenQasm, SyntaxElement, SyntaxKind, SyntaxNode, SyntaxToken};
 pub use line_index::{Columns, LineColumn, LineIndex};
 pub use parser::MAX_NESTING;
-pub use rowan::{TextRange, TextSize};
+pub use rowan::{NodeOrToken, TextRange, TextSize, TokenAtOffset, WalkEvent};
 pub use tree::{Insertion, MAX_BYTES, Parse, SyntaxError};
 
 /// Parses a file.

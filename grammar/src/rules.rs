@@ -7,6 +7,7 @@
 
 mod expressions;
 mod items;
+mod quantum;
 mod statements;
 mod types;
 

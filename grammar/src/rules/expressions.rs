@@ -347,7 +347,7 @@ pub(super) fn value(p: &mut Parser<'_>) {
     let is_call = matches!(first.kind(p), Some(K::NameRef | K::CallExpression));
     if is_call && p.at_any(&[K::Identifier, K::HardwareQubit]) && !p.starts_line() {
         let m = first.precede(p);
-        statements::operands(p, "after the operands of this measurement");
+        quantum::operands(p, "after the operands of this measurement");
         m.complete(p, K::MeasureCall);
     }
 }
@@ -359,7 +359,7 @@ pub(super) fn measurement(p: &mut Parser<'_>) {
     if p.at(K::LeftParen) {
         p.error("`measure` takes its operand without parentheses");
     } else {
-        statements::operand(p);
+        quantum::operand(p);
     }
     m.complete(p, K::MeasureExpression);
 }
