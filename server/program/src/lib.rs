@@ -15,13 +15,19 @@
 //! - Nothing here reads a disk, a clock or a protocol; included files come
 //!   through [`Files`].
 
+mod annotation;
+mod arithmetic;
 mod file;
 mod finding;
+mod functions;
 mod limits;
 mod model;
+mod nearest;
 mod program;
 pub mod queries;
 mod symbols;
+mod types;
+mod value;
 
 pub use file::{FileProblem, Files, NoFiles, SourceFile};
 pub use finding::{Edit, FileId, Finding, Fix, Related, Severity, apply_edits};
