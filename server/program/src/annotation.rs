@@ -14,7 +14,7 @@ use crate::finding::{Edit, FileId, Finding};
 use crate::model::BudgetClaim;
 use crate::nearest::nearest;
 
-pub(crate) use matrix::{Band, MatrixNote, PauliTerm};
+pub(crate) use matrix::{MatrixNote, banded, pauli_sum};
 use scan::{Scan, Token};
 
 /// A name or number with its place.

@@ -226,10 +226,10 @@ fn arithmetic(op: BinaryOp, a: &Value, b: &Value) -> Result<Value, Problem> {
     if matches!(a, Value::Duration(_)) || matches!(b, Value::Duration(_)) {
         return durations(op, a, b).ok_or_else(|| mismatch(a, b));
     }
-    if matches!(a, Value::Angle(_)) || matches!(b, Value::Angle(_)) {
-        if let Some(value) = angles(op, a, b)? {
-            return Ok(value);
-        }
+    if (matches!(a, Value::Angle(_)) || matches!(b, Value::Angle(_)))
+        && let Some(value) = angles(op, a, b)?
+    {
+        return Ok(value);
     }
     if matches!(a, Value::Complex(_)) || matches!(b, Value::Complex(_)) {
         let sides = a.complex().zip(b.complex());

@@ -17,14 +17,21 @@
 
 mod annotation;
 mod arithmetic;
+mod build;
+mod eval;
+mod facts;
 mod file;
 mod finding;
 mod functions;
+mod hir;
 mod limits;
+mod lower;
 mod model;
 mod nearest;
 mod program;
 pub mod queries;
+mod raise;
+mod standard;
 mod symbols;
 mod types;
 mod value;
@@ -39,3 +46,6 @@ pub use model::{
 };
 pub use program::Program;
 pub use symbols::{Reference, Symbol, SymbolId, SymbolKind};
+
+#[cfg(test)]
+mod tests;

@@ -27,11 +27,6 @@ pub(crate) enum Type {
 /// is evaluated.
 pub(crate) const WIDEST: u32 = 64;
 
-impl Type {
-    /// A plain `int`.
-    pub(crate) const INT: Type = Type::Int { width: WIDEST, signed: true };
-}
-
 impl fmt::Display for Type {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
