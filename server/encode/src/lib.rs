@@ -12,13 +12,18 @@
 //! - Circuits consist of one-qubit gates, CX (an X with one control) and
 //!   uncontrolled phases only, so each can be written as flat standard text.
 
+pub mod compose;
+pub mod cp;
 pub mod euler;
 pub mod mux;
+pub mod prepare;
 
 mod error;
 mod method;
 mod methods;
 mod target;
+#[cfg(test)]
+mod testing;
 
 pub use error::Error;
 pub use method::{Draft, Method, Options, Prefer};
