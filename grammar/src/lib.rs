@@ -5,6 +5,7 @@
 //! or a number means is for its users.
 
 mod event;
+mod format;
 mod kind;
 mod lexer;
 mod line_index;
@@ -13,6 +14,7 @@ mod parser;
 mod rules;
 mod tree;
 
+pub use format::{Respacing, format, formatted};
 pub use kind::{OpenQasm, SyntaxElement, SyntaxKind, SyntaxNode, SyntaxToken};
 pub use line_index::{Columns, LineColumn, LineIndex};
 pub use parser::MAX_NESTING;
