@@ -27,6 +27,7 @@ use crate::finding::{Edit, FileId, Finding};
 use crate::hir::{Expr, Stmt};
 use crate::limits::Limits;
 use crate::value::Value;
+pub(crate) use claims::DEFAULT_TOLERANCE;
 use claims::Pending;
 use scopes::Scope;
 pub(crate) use statements::written;

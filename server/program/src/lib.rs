@@ -45,6 +45,7 @@ pub use model::{
     Measured, Outcome, Property, Replacement, StandIn, Subject, Success,
 };
 pub use program::Program;
+pub use raise::{angle_text, circuit_lines};
 pub use symbols::{Reference, Symbol, SymbolId, SymbolKind};
 
 #[cfg(test)]

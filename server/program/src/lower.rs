@@ -21,7 +21,7 @@ use crate::hir::{Body, DefinedBody};
 use crate::model::{Cannot, Lowered};
 use crate::value::Value;
 
-pub(crate) use machine::{BlockSteps, Machine, Mode};
+pub(crate) use machine::{BlockSteps, Broadcast, Machine, Mode};
 
 /// A gate at parameter values: its position and the bits of the values.
 type Key = (usize, Vec<u64>);

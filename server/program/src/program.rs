@@ -8,6 +8,7 @@ use operator::Budget;
 use crate::build::build;
 use crate::facts::{Facts, Suppression};
 use crate::lower::{Definitions, Lowering, check};
+use crate::raise::replacement;
 use crate::{
     Cannot, Claim, Edit, FileId, Files, Finding, GateDef, Limits, Lowered, MatrixDef, Measured,
     Outcome, Reference, Replacement, SourceFile, Symbol, SymbolId,
@@ -143,7 +144,6 @@ impl Program {
     /// stand-in: the gate's text, its claim, the ancillas of every caller and
     /// the register they come from.
     pub fn replacement(&self, gate: &str, with: &Replacement) -> Result<Vec<Edit>, Cannot> {
-        let _ = with;
-        Err(Cannot::new(format!("there is no stand-in `{gate}`")))
+        replacement(&self.facts, gate, with)
     }
 }

@@ -1,11 +1,19 @@
 //! From circuits back to source text.
 
+mod plan;
+mod replacement;
+mod text;
+
 use grammar::TextSize;
 use grammar::nodes::NodeExt;
+use operator::{Circuit, Gate};
 
 use crate::file::SourceFile;
 use crate::finding::Edit;
 use crate::standard::LIBRARY;
+
+pub(crate) use replacement::replacement;
+pub use text::{angle_text, circuit_lines};
 
 /// The edit that includes the standard library: after the version line, or at
 /// the start of the file.
@@ -28,4 +36,11 @@ pub(crate) fn newline(text: &str) -> &'static str {
         Some(at) if text[..at].ends_with('\r') => "\r\n",
         _ => "\n",
     }
+}
+
+/// The costs of a circuit as it is written.
+fn costs(circuit: &Circuit) -> String {
+    let cx = |gate: &Gate, controls: usize| matches!(gate, Gate::X) && controls == 1;
+    let count = circuit.steps.iter().filter(|s| cx(&s.gate, s.controls.len())).count();
+    format!("{count} CX, {} gates", circuit.steps.len())
 }

@@ -1,6 +1,7 @@
 //! Whole analyses: what is found in a text, and what is not.
 
 mod findings;
+mod raising;
 
 use std::collections::BTreeMap;
 use std::sync::Arc;
