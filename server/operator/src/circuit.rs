@@ -170,7 +170,11 @@ impl Step {
     pub fn mapped(&self, map: impl Fn(usize) -> usize) -> Step {
         Step {
             gate: self.gate.clone(),
-            controls: self.controls.iter().map(|c| Control { wire: map(c.wire), on: c.on }).collect(),
+            controls: self
+                .controls
+                .iter()
+                .map(|c| Control { wire: map(c.wire), on: c.on })
+                .collect(),
             targets: self.targets.iter().map(|&w| map(w)).collect(),
         }
     }

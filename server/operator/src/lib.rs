@@ -14,14 +14,22 @@
 //! - **Norms** are spectral (largest singular value) unless named otherwise.
 //! - **Block encodings** put ancillas on the first wires, in and out of |0…0⟩.
 
+mod apply;
 mod budget;
 mod circuit;
+pub mod counts;
+pub mod decompose;
 mod error;
+mod gates;
 mod matrix;
+pub mod norm;
+pub mod success;
 
-pub use budget::Budget;
+pub use apply::{apply, encoded_columns, evaluate, evaluate_columns};
+pub use budget::{Budget, DEFAULT_MAX_WIRES};
 pub use circuit::{Circuit, Control, Definition, Gate, Step};
 pub use error::Error;
+pub use gates::gate_matrix;
 pub use matrix::Matrix;
 
 /// A double-precision complex number, the entry type of every [`Matrix`].

@@ -1,0 +1,170 @@
+//! What a circuit costs: gates, CX after lowering, depths.
+
+use std::collections::HashMap;
+use std::f64::consts::FRAC_PI_4;
+
+use crate::{Circuit, Definition, Gate, Step};
+
+/// Costs of a circuit. Sums saturate, so that definitions that double at
+/// every level stay countable.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub struct Counts {
+    /// Gates on one wire, controls included.
+    pub one_qubit: usize,
+    /// Gates on two wires, controls included.
+    pub two_qubit: usize,
+    /// Gates on three wires or more.
+    pub multi_qubit: usize,
+    /// CX after lowering to CX and one-qubit gates without ancillas; `None`
+    /// with a stand-in inside.
+    pub cx: Option<usize>,
+    /// Steps when gates on different wires go side by side.
+    pub depth: usize,
+    /// Depth with gates on two wires or more alone.
+    pub two_qubit_depth: usize,
+    /// Rotations by other angles than multiples of π/4.
+    pub rotations: usize,
+    /// T gates, rotations approximated; `None` with a stand-in inside.
+    pub t_estimate: Option<usize>,
+}
+
+/// T gates of one rotation approximated to 1e-10: 3 log₂(1/ε), the leading
+/// term of Ross and Selinger 2016.
+const T_OF_A_ROTATION: usize = 100;
+
+/// T gates of one doubly controlled X; wider controls chain them.
+const T_OF_A_TOFFOLI: usize = 7;
+
+/// Angles this near to a multiple of π/4 are one, not a rotation.
+const SAME_ANGLE: f64 = 1e-12;
+
+/// Counts a circuit, definitions included; each of these is counted once. A
+/// call occupies all wires of its operands for the depth of its body.
+pub fn counts(circuit: &Circuit) -> Counts {
+    Counter::default().circuit(circuit)
+}
+
+#[derive(Default)]
+struct Counter {
+    known: HashMap<*const Definition, Counts>,
+}
+
+impl Counter {
+    fn circuit(&mut self, circuit: &Circuit) -> Counts {
+        let mut total = Counts { cx: Some(0), t_estimate: Some(0), ..Counts::default() };
+        let mut depth = vec![0_usize; circuit.wires];
+        let mut two_depth = vec![0_usize; circuit.wires];
+        for step in &circuit.steps {
+            let counts = self.step(step);
+            total.add(&counts);
+            let wires: Vec<usize> =
+                step.controls.iter().map(|c| c.wire).chain(step.targets.iter().copied()).collect();
+            advance(&mut depth, &wires, counts.depth);
+            advance(&mut two_depth, &wires, counts.two_qubit_depth);
+        }
+        total.depth = depth.into_iter().max().unwrap_or(0);
+        total.two_qubit_depth = two_depth.into_iter().max().unwrap_or(0);
+        total
+    }
+
+    fn step(&mut self, step: &Step) -> Counts {
+        let mut gate = &step.gate;
+        while let Gate::Inverse(inner) | Gate::Power(inner, _) = gate {
+            gate = inner;
+        }
+        match gate {
+            Gate::Call(definition) if step.controls.is_empty() => {
+                let key = std::sync::Arc::as_ptr(definition);
+                if let Some(known) = self.known.get(&key) {
+                    return *known;
+                }
+                let found = self.circuit(&definition.circuit);
+                self.known.insert(key, found);
+                found
+            }
+            Gate::Call(definition) => {
+                let mut body = definition.circuit.clone();
+                body.wires += step.controls.len();
+                let controls = (definition.circuit.wires..body.wires)
+                    .zip(&step.controls)
+                    .map(|(wire, c)| crate::Control { wire, on: c.on });
+                let controls: Vec<_> = controls.collect();
+                body.steps.iter_mut().for_each(|s| s.controls.extend(&controls));
+                self.circuit(&body)
+            }
+            plain => plain_step(plain, step.controls.len()),
+        }
+    }
+}
+
+impl Counts {
+    fn add(&mut self, other: &Counts) {
+        let both = |a: Option<usize>, b: Option<usize>| Some(a?.saturating_add(b?));
+        self.one_qubit = self.one_qubit.saturating_add(other.one_qubit);
+        self.two_qubit = self.two_qubit.saturating_add(other.two_qubit);
+        self.multi_qubit = self.multi_qubit.saturating_add(other.multi_qubit);
+        self.rotations = self.rotations.saturating_add(other.rotations);
+        self.cx = both(self.cx, other.cx);
+        self.t_estimate = both(self.t_estimate, other.t_estimate);
+    }
+}
+
+/// All of these wires get to the latest of them plus some steps.
+fn advance(depth: &mut [usize], wires: &[usize], by: usize) {
+    let latest = wires.iter().map(|&w| depth[w]).max().unwrap_or(0);
+    wires.iter().for_each(|&w| depth[w] = latest.saturating_add(by));
+}
+
+/// Costs of a gate that is no definition, under some controls.
+fn plain_step(gate: &Gate, controls: usize) -> Counts {
+    let wires = controls + gate.wires();
+    let rotations = if matches!(gate, Gate::Dense(_)) { 0 } else { rotations(gate) };
+    let cx = lowered(gate, controls);
+    Counts {
+        one_qubit: usize::from(wires == 1),
+        two_qubit: usize::from(wires == 2),
+        multi_qubit: usize::from(wires > 2),
+        cx,
+        depth: usize::from(wires > 0),
+        two_qubit_depth: usize::from(wires > 1),
+        rotations,
+        t_estimate: cx.map(|_| t_gates(gate, controls, rotations)),
+    }
+}
+
+/// CX of a gate under controls, without ancillas: a gate diagonal in some
+/// basis under `k` controls is a diagonal on `k + 1` wires, 2ᵏ⁺¹ − 2 CX (2, 6,
+/// 14 …), and one of two eigenvalues ±1 under one control is a single CX.
+fn lowered(gate: &Gate, controls: usize) -> Option<usize> {
+    let diagonal =
+        |wires: usize| 2_usize.checked_shl(wires as u32 - 1).map_or(usize::MAX, |n| n - 2);
+    Some(match (gate, controls) {
+        (Gate::Dense(_), _) => return None,
+        (Gate::Id, _) | (Gate::Phase(_), 0) => 0,
+        (Gate::Phase(_), k) => diagonal(k),
+        (Gate::Swap, 0) => 3,
+        (Gate::Swap, k) => diagonal(k + 2).saturating_add(2),
+        (Gate::X | Gate::Y | Gate::Z | Gate::H, 1) => 1,
+        (_, k) => diagonal(k + 1),
+    })
+}
+
+/// Angles of a gate that are no multiple of π/4.
+fn rotations(gate: &Gate) -> usize {
+    let turns = |angle: &f64| {
+        let eighths = angle / FRAC_PI_4;
+        (eighths - eighths.round()).abs() > SAME_ANGLE
+    };
+    match gate {
+        Gate::P(a) | Gate::Rx(a) | Gate::Ry(a) | Gate::Rz(a) => usize::from(turns(a)),
+        Gate::U(a, b, c) => [a, b, c].into_iter().filter(|a| turns(a)).count(),
+        _ => 0,
+    }
+}
+
+/// T gates: exact ones, Toffolis of the controls, approximated rotations.
+fn t_gates(gate: &Gate, controls: usize, rotations: usize) -> usize {
+    let exact = usize::from(matches!(gate, Gate::T | Gate::Tdg));
+    let toffolis = controls.saturating_sub(1) * T_OF_A_TOFFOLI;
+    exact + toffolis + rotations * T_OF_A_ROTATION * if controls > 0 { 2 } else { 1 }
+}
