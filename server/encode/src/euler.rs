@@ -126,8 +126,84 @@ pub(crate) fn wrap(angle: f64) -> f64 {
     if turned <= -PI { turned + 2.0 * PI } else { turned }
 }
 
+/// Orthonormal eigenvectors of `n·σ` for a real unit vector `n`, the one
+/// with eigenvalue +1 first.
+pub(crate) fn basis_along([x, y, z]: [f64; 3]) -> Matrix {
+    let (a, b) = if z >= 0.0 {
+        (C64::new(1.0 + z, 0.0), C64::new(x, y))
+    } else {
+        (C64::new(x, -y), C64::new(1.0 - z, 0.0))
+    };
+    let norm = (a.norm_sqr() + b.norm_sqr()).sqrt();
+    let (a, b) = (a / norm, b / norm);
+    Matrix::from_rows(2, 2, &[a, -b.conj(), b, a.conj()])
+}
+
 /// The 2×2 matrix of H.
 pub(crate) fn hadamard() -> Matrix {
     let s = FRAC_1_SQRT_2;
     Matrix::from_real(2, 2, &[s, s, s, -s])
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{gap, haar, matrix_of};
+
+    #[test]
+    fn any_one_qubit_unitary_is_one_gate_and_a_phase() {
+        for seed in 0..200 {
+            let gate = haar(2, seed);
+            let mut circuit = Circuit::new(1);
+            push(&mut circuit, &gate, 0);
+            assert!(gap(&matrix_of(&circuit), &gate) < 1e-15 * 4.0);
+            assert!(circuit.steps.len() <= 2);
+        }
+    }
+
+    #[test]
+    fn named_gates_keep_their_names() {
+        let gates = [
+            Gate::X,
+            Gate::Y,
+            Gate::Z,
+            Gate::H,
+            Gate::S,
+            Gate::Sdg,
+            Gate::T,
+            Gate::Tdg,
+            Gate::Sx,
+            Gate::P(0.3),
+            Gate::Rx(0.3),
+            Gate::Rx(-0.3),
+            Gate::Ry(0.3),
+            Gate::Ry(-0.3),
+        ];
+        for gate in gates {
+            let mut once = Circuit::new(1);
+            once.push(gate.clone(), &[0]);
+            let mut again = Circuit::new(1);
+            push(&mut again, &matrix_of(&once), 0);
+            assert!(gap(&matrix_of(&once), &matrix_of(&again)) < 4e-15, "{gate:?}");
+            assert_eq!(again.steps.len(), 1, "{gate:?}: {:?}", again.steps);
+            let kind = std::mem::discriminant::<Gate>;
+            assert_eq!(kind(&gate), kind(&again.steps[0].gate), "{gate:?}");
+        }
+    }
+
+    #[test]
+    fn nearly_diagonal_and_nearly_flipped_gates_are_exact() {
+        for small in [1e-7, 1e-13, 1e-15, 1e-17, 0.0] {
+            for flip in [false, true] {
+                let (s, c) = f64::sin_cos(small);
+                let (a, b) = if flip { (s, c) } else { (c, s) };
+                let e = C64::cis;
+                let rows = [e(0.3) * a, -e(1.1) * b, e(2.9) * b, e(2.9 + 1.1 - 0.3) * a];
+                let gate = Matrix::from_rows(2, 2, &rows);
+                let mut circuit = Circuit::new(1);
+                push(&mut circuit, &gate, 0);
+                assert!(gap(&matrix_of(&circuit), &gate) < 2e-14);
+            }
+        }
+    }
 }

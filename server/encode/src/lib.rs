@@ -16,18 +16,27 @@ pub mod compose;
 pub mod cp;
 pub mod euler;
 pub mod mux;
+pub mod passes;
 pub mod prepare;
 
+mod candidate;
 mod error;
 mod method;
 mod methods;
+mod synthesis;
 mod target;
+mod verify;
+
 #[cfg(test)]
 mod testing;
+#[cfg(test)]
+mod tests;
 
+pub use candidate::{Candidate, Outcome, candidates};
 pub use error::Error;
-pub use method::{Draft, Method, Options, Prefer};
+pub use method::{DEFAULT_TOLERANCE, Draft, Method, Options, Prefer};
 pub use methods::METHODS;
+pub use synthesis::{UNITARY, synthesise};
 pub use target::Target;
 
 /// Result of an encoding.

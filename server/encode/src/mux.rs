@@ -66,22 +66,48 @@ pub fn rotation_left_open(
     controls: &[usize],
     target: usize,
 ) -> Vec<usize> {
+    open_rotation(circuit, angles, controls, target, [Gate::H, Gate::H])
+}
+
+/// [`rotation`] about Y for a target that starts in |0⟩ and is projected on
+/// |0⟩ at the end: the closing CZs then do nothing, so 2ᵏ − 1 CX.
+///
+/// Only the corner is right: the block from |0⟩ to |0⟩ of the target.
+pub fn projected_rotation(
+    circuit: &mut Circuit,
+    angles: &[f64],
+    controls: &[usize],
+    target: usize,
+) {
+    let ends = [Gate::Ry(FRAC_PI_2), Gate::Ry(-FRAC_PI_2)];
+    open_rotation(circuit, angles, controls, target, ends);
+}
+
+/// The rotations of [`rotation_left_open`] between two given gates that act
+/// as H: on the left of the circuit and on the right.
+fn open_rotation(
+    circuit: &mut Circuit,
+    angles: &[f64],
+    controls: &[usize],
+    target: usize,
+    [first, last]: [Gate; 2],
+) -> Vec<usize> {
     // H turns each CX into a CZ and each angle into its opposite; between
     // two entanglers the pair of H cancels, so only the outer ones remain.
     let terms = gray_angles(angles, controls.len());
     let closing = terms.last().map_or(0, |&(mask, _)| mask);
-    if terms.iter().all(|&(mask, _)| mask == 0) {
+    if closing == 0 {
         rotation(circuit, Axis::Y, angles, controls, target);
         return Vec::new();
     }
     let mut parity = 0;
-    circuit.push(Gate::H, &[target]);
+    circuit.push(first, &[target]);
     for (mask, angle) in terms {
         entangle(circuit, parity ^ mask, controls, target);
         circuit.push(Gate::Ry(-angle), &[target]);
         parity = mask;
     }
-    circuit.push(Gate::H, &[target]);
+    circuit.push(last, &[target]);
     masked(closing, controls).collect()
 }
 
@@ -228,16 +254,129 @@ impl Split {
 }
 
 /// Orthonormal eigenvectors of a 2×2 unitary with eigenvalues i, −i, in
-/// this order: it is `i n·σ`, and (1 + n_z, n_x + i n_y) belongs to +i.
+/// this order: it is `i n·σ`.
 fn eigenvectors(y: &Matrix) -> Matrix {
-    let z = 0.5 * (y[(0, 0)].im - y[(1, 1)].im);
-    let plus = 0.5 * (y[(1, 0)] - y[(0, 1)].conj()) * C64::new(0.0, -1.0);
-    let (a, b) = if z >= 0.0 {
-        (C64::new(1.0 + z, 0.0), plus)
-    } else {
-        (plus.conj(), C64::new(1.0 - z, 0.0))
-    };
-    let norm = (a.norm_sqr() + b.norm_sqr()).sqrt();
-    let (a, b) = (a / norm, b / norm);
-    Matrix::from_rows(2, 2, &[a, -b.conj(), b, a.conj()])
+    let flip = 0.5 * (y[(1, 0)] - y[(0, 1)].conj());
+    euler::basis_along([flip.im, -flip.re, 0.5 * (y[(0, 0)] - y[(1, 1)]).im])
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{cx_count, gap, haar, matrix_of};
+
+    fn block_diagonal(blocks: &[Matrix]) -> Matrix {
+        let mut m = Matrix::zeros(2 * blocks.len(), 2 * blocks.len());
+        blocks.iter().enumerate().for_each(|(i, b)| m.set_block(2 * i, 2 * i, b));
+        m
+    }
+
+    fn rotations(axis: Axis, angles: &[f64]) -> Matrix {
+        let one = |&angle: &f64| {
+            let mut circuit = Circuit::new(1);
+            circuit.push(axis.gate(angle), &[0]);
+            matrix_of(&circuit)
+        };
+        block_diagonal(&angles.iter().map(one).collect::<Vec<_>>())
+    }
+
+    /// 2ᵏ CX and 2ᵏ rotations: Möttönen et al. 2004, fig. 2.
+    #[test]
+    fn rotations_are_multiplexed() {
+        let mut random = fastrand::Rng::with_seed(1);
+        for axis in [Axis::Y, Axis::Z] {
+            for k in 0..4 {
+                let angles: Vec<f64> = (0..1 << k).map(|_| 6.0 * random.f64() - 3.0).collect();
+                let mut circuit = Circuit::new(k + 1);
+                rotation(&mut circuit, axis, &angles, &(0..k).collect::<Vec<_>>(), k);
+                assert!(gap(&matrix_of(&circuit), &rotations(axis, &angles)) < 1e-14);
+                assert_eq!(cx_count(&circuit), if k == 0 { 0 } else { 1 << k });
+            }
+        }
+    }
+
+    #[test]
+    fn zero_angles_cost_nothing() {
+        let cases: [(&[f64], usize); 5] = [
+            (&[0.3; 8], 0),
+            (&[0.0; 8], 0),
+            (&[0.3, 0.3, 0.3, 0.3, 0.7, 0.7, 0.7, 0.7], 2),
+            (&[0.3, 0.7, 0.3, 0.7, 0.3, 0.7, 0.3, 0.7], 2),
+            (&[0.5, 0.5, 0.1, 0.1, -0.3, -0.3, 0.9, 0.9], 4),
+        ];
+        for (angles, cx) in cases {
+            let mut circuit = Circuit::new(4);
+            rotation(&mut circuit, Axis::Y, angles, &[0, 1, 2], 3);
+            assert!(gap(&matrix_of(&circuit), &rotations(Axis::Y, angles)) < 1e-14);
+            assert_eq!(cx_count(&circuit), cx, "{angles:?}");
+        }
+    }
+
+    #[test]
+    fn an_open_rotation_misses_its_last_cz() {
+        let mut random = fastrand::Rng::with_seed(2);
+        for k in 0..4 {
+            let angles: Vec<f64> = (0..1 << k).map(|_| 6.0 * random.f64() - 3.0).collect();
+            let mut circuit = Circuit::new(k + 1);
+            let controls: Vec<usize> = (0..k).collect();
+            let open = rotation_left_open(&mut circuit, &angles, &controls, k);
+            assert_eq!(cx_count(&circuit), (1 << k) - 1);
+            for control in open {
+                circuit.push(Gate::H, &[k]);
+                circuit.cx(control, k);
+                circuit.push(Gate::H, &[k]);
+            }
+            assert!(gap(&matrix_of(&circuit), &rotations(Axis::Y, &angles)) < 1e-14);
+        }
+    }
+
+    #[test]
+    fn diagonals_take_two_to_the_n_minus_two_cx() {
+        let mut random = fastrand::Rng::with_seed(3);
+        for n in 0..5 {
+            let phases: Vec<f64> = (0..1 << n).map(|_| 6.0 * random.f64() - 3.0).collect();
+            let mut circuit = Circuit::new(n);
+            diagonal(&mut circuit, &phases, &(0..n).collect::<Vec<_>>());
+            let entries: Vec<C64> = phases.iter().map(|&a| C64::cis(a)).collect();
+            assert!(gap(&matrix_of(&circuit), &Matrix::from_diagonal(&entries)) < 1e-14);
+            assert_eq!(cx_count(&circuit), (1_usize << n).saturating_sub(2));
+        }
+    }
+
+    /// 2ᵏ − 1 CX: Bergholm et al. 2005, table I.
+    #[test]
+    fn unitaries_are_multiplexed_up_to_a_diagonal() {
+        for k in 0..4 {
+            let gates: Vec<Matrix> = (0..1 << k).map(|i| haar(2, 10 + i)).collect();
+            check_unitaries(&gates, (1 << k) - 1);
+        }
+    }
+
+    #[test]
+    fn special_unitaries_are_multiplexed_too() {
+        let id = Matrix::identity(2);
+        let x = Matrix::from_real(2, 2, &[0.0, 1.0, 1.0, 0.0]);
+        let z = Matrix::from_real(2, 2, &[1.0, 0.0, 0.0, -1.0]);
+        let h = euler::hadamard();
+        check_unitaries(&[id.clone(), id.clone()], 0);
+        check_unitaries(&[id.clone(), z.clone()], 0);
+        check_unitaries(&[id.clone(), x.clone()], 1);
+        check_unitaries(&[x.clone(), z.clone(), h.clone(), id.clone()], 3);
+        check_unitaries(&[h.clone(), h.clone(), h.clone(), x.clone()], 3);
+        check_unitaries(&[h.clone(), x.clone(), h, x], 1);
+    }
+
+    fn check_unitaries(gates: &[Matrix], cx: usize) {
+        let k = gates.len().trailing_zeros() as usize;
+        let mut circuit = Circuit::new(k + 1);
+        let controls: Vec<usize> = (0..k).collect();
+        let left = unitaries_up_to_diagonal(&mut circuit, gates, &controls, k);
+        let whole = &Matrix::from_diagonal(&left) * &matrix_of(&circuit);
+        assert!(
+            gap(&whole, &block_diagonal(gates)) < 1e-13,
+            "{:e}",
+            gap(&whole, &block_diagonal(gates))
+        );
+        assert!(cx_count(&circuit) <= cx, "{}", cx_count(&circuit));
+    }
 }
