@@ -26,6 +26,7 @@ mod functions;
 mod hir;
 mod limits;
 mod lower;
+mod measure;
 mod model;
 mod nearest;
 mod program;
@@ -42,8 +43,9 @@ pub use grammar::{TextRange, TextSize};
 pub use limits::Limits;
 pub use model::{
     BudgetClaim, Cannot, Claim, ClaimKind, Cut, GateDef, Lowered, MatrixDef, MatrixSource,
-    Measured, Outcome, Property, Replacement, StandIn, Subject, Success,
+    Measured, Outcome, Property, Replacement, StandIn, Subject,
 };
+pub use operator::success::Success;
 pub use program::Program;
 pub use raise::{angle_text, circuit_lines};
 pub use symbols::{Reference, Symbol, SymbolId, SymbolKind};

@@ -6,6 +6,7 @@
 //! not known (a gate's parameter, a measured bit) stays unknown and is never
 //! a trouble by itself.
 
+mod loops;
 mod machine;
 mod qubits;
 mod units;

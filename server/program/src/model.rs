@@ -3,6 +3,7 @@
 use std::sync::Arc;
 
 use grammar::{TextRange, TextSize};
+use operator::success::Success;
 use operator::{Circuit, Matrix};
 
 use crate::{FileId, SymbolId};
@@ -310,18 +311,6 @@ pub struct Measured {
     pub samples: Vec<Vec<f64>>,
     /// One sentence more, such as which columns are worst.
     pub note: Option<String>,
-}
-
-/// Chance of success of a block encoding: over all inputs on average, for the
-/// worst one, for the best one.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Success {
-    /// ‖M‖²_F / (α²N).
-    pub average: f64,
-    /// σ_min² / α².
-    pub worst: f64,
-    /// σ_max² / α².
-    pub best: f64,
 }
 
 /// The circuit that is to take a stand-in's place.

@@ -8,10 +8,11 @@ use operator::Budget;
 use crate::build::build;
 use crate::facts::{Facts, Suppression};
 use crate::lower::{Definitions, Lowering, check};
+use crate::measure::{measure, sample_points};
 use crate::raise::replacement;
 use crate::{
     Cannot, Claim, Edit, FileId, Files, Finding, GateDef, Limits, Lowered, MatrixDef, Measured,
-    Outcome, Reference, Replacement, SourceFile, Symbol, SymbolId,
+    Reference, Replacement, SourceFile, Symbol, SymbolId,
 };
 
 /// A file and its includes, analysed. `Send + Sync`; share it by `Arc`.
@@ -126,18 +127,14 @@ impl Program {
 
     /// Puts a claim to the test.
     pub fn measure(&self, claim: &Claim, budget: &Budget) -> Measured {
-        let _ = (claim, budget);
-        Measured {
-            outcome: Outcome::Undecided("claims are not measured yet".to_owned()),
-            error: None,
-            tolerance: 0.0,
-            scale: None,
-            ancillas: None,
-            norm: None,
-            success: None,
-            samples: Vec::new(),
-            note: None,
-        }
+        measure(self, claim, budget)
+    }
+
+    /// The parameter values at which a gate is looked at where numbers are
+    /// needed: those of `@cantle.sample`, else several generic points; one
+    /// empty point for a gate without parameters.
+    pub fn sample_points(&self, gate: &GateDef) -> Vec<Vec<f64>> {
+        sample_points(gate)
     }
 
     /// The edits of the main file that put a circuit in the place of a

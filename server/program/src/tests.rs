@@ -2,6 +2,7 @@
 
 mod findings;
 mod raising;
+mod values;
 
 use std::collections::BTreeMap;
 use std::sync::Arc;
