@@ -19,6 +19,7 @@ mod budget;
 mod circuit;
 pub mod counts;
 pub mod decompose;
+pub mod distance;
 mod error;
 mod gates;
 mod matrix;
