@@ -1,6 +1,6 @@
 //! Every method on every kind of matrix, and counts against the literature.
 
-use operator::{Budget, C64, Matrix, norm};
+use operator::{Budget, C64, Circuit, Gate, Matrix, norm};
 
 use crate::testing::{cx_count, dft, gap, haar, matrix_of, permutation};
 use crate::{Candidate, Error, METHODS, Options, Prefer, Target, candidates, synthesise};
@@ -145,7 +145,7 @@ fn check_candidate(candidate: &Candidate, m: &Matrix, tolerance: f64, name: &str
     assert!(gap(&(&whole.adjoint() * &whole), &Matrix::identity(whole.rows())) < EXACT);
     for step in &candidate.circuit.steps {
         let plain = step.controls.is_empty() && step.targets.len() <= 1;
-        let cx = step.controls.len() == 1 && matches!(step.gate, operator::Gate::X);
+        let cx = step.controls.len() == 1 && matches!(step.gate, Gate::X);
         assert!(plain || cx, "{name}, {method}: {step:?}");
     }
 }
@@ -155,8 +155,7 @@ fn check_candidate(candidate: &Candidate, m: &Matrix, tolerance: f64, name: &str
 #[test]
 fn dilations_cost_two_unitaries_and_a_rotation() {
     for (n, cx) in [(1, 1), (2, 8), (3, 46), (4, 214), (5, 918)] {
-        let size = 1_usize << n;
-        let m = Matrix::from_fn(size, size, |r, c| haar(size, 5)[(r, c)] * (1.0 + r as f64) * 0.1);
+        let m = zoo(n).into_iter().find(|(name, _)| name.starts_with("general")).unwrap().1;
         let found = only("dilation", &m);
         assert!(found.counts.cx.unwrap() <= cx, "{n} qubits: {:?}", found.counts.cx);
         let norm = norm::spectral(&m).unwrap();
@@ -183,6 +182,58 @@ fn unitaries_take_no_ancilla_and_keep_their_scale() {
             assert!((found.scale / scale - 1.0).abs() < 1e-13);
             assert!(scale != 1.0 || found.scale == 1.0);
         }
+    }
+}
+
+/// Random circuits of all one-qubit gates, CX and phases.
+fn random_circuit(wires: usize, steps: usize, seed: u64) -> Circuit {
+    let mut random = fastrand::Rng::with_seed(seed);
+    let mut circuit = Circuit::new(wires);
+    for _ in 0..steps {
+        let (wire, angle) = (random.usize(0..wires), 6.0 * random.f64() - 3.0);
+        let gate = match random.usize(0..18) {
+            0 => Gate::X,
+            1 => Gate::H,
+            2 => Gate::T,
+            3 => Gate::Sx,
+            4 => Gate::Rx(angle),
+            5 => Gate::Rz(angle),
+            6 => Gate::U(angle, 0.3, -angle),
+            7 => Gate::Inverse(Box::new(Gate::Sx)),
+            8 => {
+                circuit.push(Gate::Phase(angle), &[]);
+                continue;
+            }
+            _ => {
+                circuit.cx(wire, (wire + 1 + random.usize(0..wires - 1)) % wires);
+                continue;
+            }
+        };
+        circuit.push(gate, &[wire]);
+    }
+    circuit
+}
+
+#[test]
+fn rewriting_keeps_the_operator_and_adds_nothing() {
+    for seed in 0..60 {
+        let circuit = random_circuit(2 + seed as usize % 3, 40, seed);
+        let after = crate::passes::simplified(&circuit, &Budget::default()).unwrap();
+        assert!(gap(&matrix_of(&after), &matrix_of(&circuit)) < EXACT, "seed {seed}");
+        assert!(cx_count(&after) <= cx_count(&circuit), "seed {seed}");
+        let [before, now] = [&circuit, &after].map(operator::counts::counts);
+        assert!(now.one_qubit <= before.one_qubit && now.depth <= before.depth, "seed {seed}");
+    }
+}
+
+#[test]
+fn a_circuit_and_its_mirror_cancel() {
+    for seed in 0..20 {
+        let half = random_circuit(3, 30, seed);
+        let mut whole = half.clone();
+        whole.append(&half.inverse(), &[0, 1, 2]);
+        let after = crate::passes::simplified(&whole, &Budget::default()).unwrap();
+        assert_eq!(after.steps.len(), 0, "seed {seed}: {:?}", after.steps);
     }
 }
 
