@@ -36,7 +36,7 @@ pub fn format(parse: &Parse) -> Vec<Respacing> {
 /// What the rules say about each gap.
 fn respacings(parse: &Parse) -> Vec<Respacing> {
     let mut pieces = pieces(parse);
-    let shape = Shape::new(parse);
+    let shape = Shape::new(parse, &pieces);
     let line_break = line_break(parse);
     for index in 0..pieces.len() {
         let before = index.checked_sub(1).and_then(|index| pieces.get(index));
@@ -93,10 +93,10 @@ struct Shape {
 }
 
 impl Shape {
-    fn new(parse: &Parse) -> Self {
+    fn new(parse: &Parse, pieces: &[Piece]) -> Self {
         let literals = parse.syntax().descendants().filter(|node| node.kind() == K::ArrayLiteral);
         let vertical = literals.filter(matrix::is_vertical).collect();
-        Self { broken: broken_statements(parse), vertical }
+        Self { broken: broken_statements(parse, pieces), vertical }
     }
 
     /// Whether a place is inside a broken statement, its ends left out.
@@ -115,11 +115,13 @@ impl Shape {
 
 /// The innermost statements that errors lie in or beside, without those that
 /// are inside another one of them.
-fn broken_statements(parse: &Parse) -> Vec<TextRange> {
-    let root = parse.syntax();
+fn broken_statements(parse: &Parse, pieces: &[Piece]) -> Vec<TextRange> {
     let mut ranges = Vec::new();
     for error in parse.errors() {
-        for token in root.token_at_offset(error.range.start()) {
+        let place = error.range.start();
+        let first = pieces.partition_point(|piece| piece.token.text_range().end() < place);
+        let beside = pieces.get(first..).unwrap_or_default().iter().map(|piece| &piece.token);
+        for token in beside.take_while(|token| token.text_range().start() <= place) {
             let statement = token.parent_ancestors().find(|node| Statement::can_cast(node.kind()));
             ranges.extend(statement.map(|node| node.text_range()));
         }
