@@ -24,6 +24,7 @@ mod error;
 mod gates;
 mod matrix;
 pub mod norm;
+pub mod structure;
 pub mod success;
 
 pub use apply::{apply, encoded_columns, evaluate, evaluate_columns};

@@ -2,10 +2,11 @@
 //! Shannon decomposition: Shende, Bullock, Markov 2006), structure first.
 
 use operator::decompose::{cosine_sine, eigen_unitary};
+use operator::structure::{block, equal, factors, flips, is_diagonal, selects};
 use operator::{Budget, C64, Gate, Matrix};
 
 use super::plan::Plan;
-use super::structure;
+use super::structure::{self, NOTHING};
 use crate::mux::{self, Axis};
 use crate::{Result, euler};
 
@@ -24,7 +25,7 @@ pub(crate) fn push(
     match *wires {
         [] => plan.steps(|c| euler::push_phase(c, unitary[(0, 0)].arg())),
         [wire] => plan.steps(|c| euler::push(c, unitary, wire)),
-        _ if structure::is_diagonal(unitary) => {
+        _ if is_diagonal(unitary, NOTHING) => {
             let phases = mux::phases_of(&unitary.diagonal());
             plan.steps(|c| mux::diagonal(c, &phases, wires));
         }
@@ -36,16 +37,15 @@ pub(crate) fn push(
 
 /// Three wires or more, not diagonal.
 fn push_larger(plan: &mut Plan, unitary: &Matrix, wires: &[usize], budget: &Budget) -> Result<()> {
-    if let Some(factors) = structure::factors(unitary) {
-        for (places, factor) in &factors.parts {
+    if let Some(found) = factors(unitary, NOTHING) {
+        for (places, factor) in &found.parts {
             let wires: Vec<usize> = places.iter().map(|&p| wires[p]).collect();
             push(plan, factor, &wires, budget)?;
         }
         return Ok(());
     }
     let places = 0..wires.len();
-    let selecting: Vec<usize> =
-        places.clone().filter(|&p| structure::selects(unitary, p)).collect();
+    let selecting: Vec<usize> = places.clone().filter(|&p| selects(unitary, p, NOTHING)).collect();
     if selecting.len() + 1 == wires.len() {
         let target = places.clone().find(|p| !selecting.contains(p)).unwrap_or(0);
         push_selected(plan, unitary, wires, target);
@@ -53,12 +53,12 @@ fn push_larger(plan: &mut Plan, unitary: &Matrix, wires: &[usize], budget: &Budg
     }
     if let Some(&place) = selecting.first() {
         let (wire, rest) = taken_out(wires, place);
-        let blocks = [false, true].map(|v| structure::block(unitary, place, v, v));
+        let blocks = [false, true].map(|v| block(unitary, place, v, v));
         return push_multiplexer(plan, &blocks, wire, &rest, budget);
     }
-    if let Some(place) = places.clone().find(|&p| structure::flips(unitary, p)) {
+    if let Some(place) = places.clone().find(|&p| flips(unitary, p, NOTHING)) {
         let (wire, rest) = taken_out(wires, place);
-        let blocks = [false, true].map(|v| structure::block(unitary, place, !v, v));
+        let blocks = [false, true].map(|v| block(unitary, place, !v, v));
         push_multiplexer(plan, &blocks, wire, &rest, budget)?;
         plan.steps(|c| c.push(Gate::X, &[wire]));
         return Ok(());
@@ -126,7 +126,7 @@ fn push_multiplexer(
     rest: &[usize],
     budget: &Budget,
 ) -> Result<()> {
-    if structure::equal(zero, one) {
+    if equal(zero, one, NOTHING) {
         return push(plan, zero, rest, budget);
     }
     let eigen = eigen_unitary(&(zero * &one.adjoint()))?;
