@@ -54,8 +54,8 @@ fn merged(circuit: &Circuit, budget: &Budget) -> Result<Circuit> {
     Ok(out)
 }
 
-/// Writes out a run of one-qubit gates, a single one as it stands. Returns
-/// the phase that its one gate leaves.
+/// Writes out a run of one-qubit gates as one gate, or none. Returns the
+/// phase that this leaves.
 fn flush(out: &mut Circuit, run: &mut Vec<&Step>, wire: usize, budget: &Budget) -> Result<C64> {
     let run = std::mem::take(run);
     let mut product = Matrix::identity(2);

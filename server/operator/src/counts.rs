@@ -41,24 +41,26 @@ const SAME_ANGLE: f64 = 1e-12;
 /// Counts a circuit, definitions included; each of these is counted once. A
 /// call occupies all wires of its operands for the depth of its body.
 pub fn counts(circuit: &Circuit) -> Counts {
-    Counter::default().circuit(circuit)
+    Counter::default().circuit(circuit, 0)
 }
 
+/// Counts of definitions met so far, by the controls they are called under.
 #[derive(Default)]
 struct Counter {
-    known: HashMap<*const Definition, Counts>,
+    known: HashMap<(*const Definition, usize), Counts>,
 }
 
 impl Counter {
-    fn circuit(&mut self, circuit: &Circuit) -> Counts {
+    /// Counts of a circuit all of whose steps are under `extra` controls.
+    fn circuit(&mut self, circuit: &Circuit, extra: usize) -> Counts {
         let mut total = Counts { cx: Some(0), t_estimate: Some(0), ..Counts::default() };
-        let mut depth = vec![0_usize; circuit.wires];
-        let mut two_depth = vec![0_usize; circuit.wires];
+        let mut depth = vec![0_usize; circuit.wires + extra];
+        let mut two_depth = depth.clone();
         for step in &circuit.steps {
-            let counts = self.step(step);
+            let counts = self.step(step, extra);
             total.add(&counts);
-            let wires: Vec<usize> =
-                step.controls.iter().map(|c| c.wire).chain(step.targets.iter().copied()).collect();
+            let own = step.controls.iter().map(|c| c.wire).chain(step.targets.iter().copied());
+            let wires: Vec<usize> = own.chain(circuit.wires..circuit.wires + extra).collect();
             advance(&mut depth, &wires, counts.depth);
             advance(&mut two_depth, &wires, counts.two_qubit_depth);
         }
@@ -67,33 +69,20 @@ impl Counter {
         total
     }
 
-    fn step(&mut self, step: &Step) -> Counts {
+    fn step(&mut self, step: &Step, extra: usize) -> Counts {
         let mut gate = &step.gate;
         while let Gate::Inverse(inner) | Gate::Power(inner, _) = gate {
             gate = inner;
         }
-        match gate {
-            Gate::Call(definition) if step.controls.is_empty() => {
-                let key = std::sync::Arc::as_ptr(definition);
-                if let Some(known) = self.known.get(&key) {
-                    return *known;
-                }
-                let found = self.circuit(&definition.circuit);
-                self.known.insert(key, found);
-                found
-            }
-            Gate::Call(definition) => {
-                let mut body = definition.circuit.clone();
-                body.wires += step.controls.len();
-                let controls = (definition.circuit.wires..body.wires)
-                    .zip(&step.controls)
-                    .map(|(wire, c)| crate::Control { wire, on: c.on });
-                let controls: Vec<_> = controls.collect();
-                body.steps.iter_mut().for_each(|s| s.controls.extend(&controls));
-                self.circuit(&body)
-            }
-            plain => plain_step(plain, step.controls.len()),
+        let controls = step.controls.len() + extra;
+        let Gate::Call(definition) = gate else { return plain_step(gate, controls) };
+        let key = (std::sync::Arc::as_ptr(definition), controls);
+        if let Some(known) = self.known.get(&key) {
+            return *known;
         }
+        let found = self.circuit(&definition.circuit, controls);
+        self.known.insert(key, found);
+        found
     }
 }
 
@@ -167,4 +156,75 @@ fn t_gates(gate: &Gate, controls: usize, rotations: usize) -> usize {
     let exact = usize::from(matches!(gate, Gate::T | Gate::Tdg));
     let toffolis = controls.saturating_sub(1) * T_OF_A_TOFFOLI;
     exact + toffolis + rotations * T_OF_A_ROTATION * if controls > 0 { 2 } else { 1 }
+}
+
+#[cfg(test)]
+mod tests {
+    use std::sync::Arc;
+
+    use super::*;
+    use crate::{Control, Matrix};
+
+    fn controlled(gate: Gate, controls: usize) -> Circuit {
+        let targets: Vec<usize> = (controls..controls + gate.wires()).collect();
+        let mut circuit = Circuit::new(controls + targets.len());
+        let controls: Vec<Control> = (0..controls).map(Control::one).collect();
+        circuit.push_controlled(gate, &controls, &targets);
+        circuit
+    }
+
+    /// Toffoli 6, Fredkin 8, triply controlled X 14: the usual circuits
+    /// without ancillas.
+    #[test]
+    fn lowering_costs_what_is_published() {
+        let table = [
+            (Gate::X, 0, 0),
+            (Gate::X, 1, 1),
+            (Gate::X, 2, 6),
+            (Gate::X, 3, 14),
+            (Gate::H, 1, 1),
+            (Gate::P(0.3), 1, 2),
+            (Gate::Swap, 0, 3),
+            (Gate::Swap, 1, 8),
+            (Gate::Phase(0.3), 1, 0),
+            (Gate::Phase(0.3), 2, 2),
+        ];
+        for (gate, controls, cx) in table {
+            let found = counts(&controlled(gate.clone(), controls));
+            assert_eq!(found.cx, Some(cx), "{gate:?} under {controls}");
+        }
+    }
+
+    #[test]
+    fn gates_side_by_side_share_their_depth() {
+        let mut circuit = Circuit::new(3);
+        circuit.push(Gate::H, &[0]);
+        circuit.push(Gate::T, &[2]);
+        circuit.cx(0, 1);
+        circuit.push(Gate::Rz(0.3), &[2]);
+        circuit.cx(1, 2);
+        let found = counts(&circuit);
+        assert_eq!((found.one_qubit, found.two_qubit, found.multi_qubit), (3, 2, 0));
+        assert_eq!((found.depth, found.two_qubit_depth, found.rotations), (3, 2, 1));
+    }
+
+    #[test]
+    fn a_stand_in_has_no_cx_count() {
+        let dense = Gate::Dense(Arc::new(Matrix::identity(4)));
+        assert_eq!(counts(&controlled(dense, 0)).cx, None);
+    }
+
+    /// 2⁸⁰ gates are more than can be counted, or expanded.
+    #[test]
+    fn definitions_that_double_are_counted_without_expansion() {
+        let mut gate = Gate::H;
+        for level in 0..80 {
+            let mut circuit = Circuit::new(1);
+            circuit.push(gate.clone(), &[0]);
+            circuit.push(gate, &[0]);
+            gate = Gate::Call(Arc::new(Definition::new(format!("level{level}"), circuit)));
+        }
+        assert_eq!(counts(&controlled(gate.clone(), 0)).one_qubit, usize::MAX);
+        assert_eq!(counts(&controlled(gate, 1)).two_qubit, usize::MAX);
+    }
 }

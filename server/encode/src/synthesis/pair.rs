@@ -126,61 +126,59 @@ fn polished(unitary: &Matrix, start: f64) -> Option<(f64, Canonical)> {
 
 /// Appends the circuit of a canonical decomposition.
 fn push_canonical(circuit: &mut Circuit, form: &Canonical, wires: [usize; 2]) {
-    let [first, second] = wires;
-    let mut phase = form.phase;
-    let mut local = |circuit: &mut Circuit, gate: &Matrix, wire: usize| {
-        phase += euler::push_up_to_phase(circuit, gate, wire).arg();
-    };
-    let [x, y, z] = form.xyz;
     let ([l0, l1], [r0, r1]) = (&form.left, &form.right);
-    match form.cx() {
-        0 => {
-            local(circuit, &(l0 * r0), first);
-            local(circuit, &(l1 * r1), second);
-        }
-        // exp(iπ/4 XX) = e^{−iπ/4} (H e^{iπZ/4} ⊗ e^{iπX/4}) CX (H ⊗ I).
-        1 => {
-            let h = euler::hadamard();
-            local(circuit, &(&h * r0), first);
-            local(circuit, r1, second);
-            circuit.cx(first, second);
-            local(circuit, &(&(l0 * &h) * &phases(FRAC_PI_4)), first);
-            local(circuit, &(&(&(l1 * &h) * &phases(FRAC_PI_4)) * &h), second);
-            phase -= FRAC_PI_4;
-        }
-        // exp(i(x XX + z ZZ)) = CX (e^{ixX} ⊗ e^{izZ}) CX.
-        2 => {
-            local(circuit, r0, first);
-            local(circuit, r1, second);
-            circuit.cx(first, second);
-            circuit.push(Gate::Rx(-2.0 * x), &[first]);
-            circuit.push(Gate::Rz(-2.0 * z), &[second]);
-            circuit.cx(first, second);
-            local(circuit, l0, first);
-            local(circuit, l1, second);
-        }
-        // Three CX the outer of which point up; after Vatan, Williams 2004.
-        _ => {
-            let s = Matrix::from_diagonal(&[C64::ONE, C64::I]);
-            local(circuit, r0, first);
-            local(circuit, &(&s.adjoint() * r1), second);
-            circuit.cx(second, first);
-            circuit.push(Gate::Rz(FRAC_PI_2 - 2.0 * z), &[first]);
-            circuit.push(Gate::Ry(2.0 * x - FRAC_PI_2), &[second]);
-            circuit.cx(first, second);
-            circuit.push(Gate::Ry(FRAC_PI_2 - 2.0 * y), &[second]);
-            circuit.cx(second, first);
-            local(circuit, &(l0 * &s), first);
-            local(circuit, l1, second);
-            phase += FRAC_PI_4;
-        }
-    }
-    euler::push_phase(circuit, phase);
+    let phase = match form.cx() {
+        0 => push_local(circuit, [&(l0 * r0), &(l1 * r1)], wires),
+        1 => push_one(circuit, form, wires),
+        2 => push_two(circuit, form, wires),
+        _ => push_three(circuit, form, wires),
+    };
+    euler::push_phase(circuit, form.phase + phase);
 }
 
-/// `e^{iaZ}`.
-fn phases(a: f64) -> Matrix {
-    Matrix::from_diagonal(&[C64::cis(a), C64::cis(-a)])
+/// A gate on each wire; returns the phase still missing.
+fn push_local(circuit: &mut Circuit, gates: [&Matrix; 2], wires: [usize; 2]) -> f64 {
+    let phases = [0, 1].map(|k| euler::push_up_to_phase(circuit, gates[k], wires[k]).arg());
+    phases[0] + phases[1]
+}
+
+/// exp(iπ/4 XX) = e^{−iπ/4} (H e^{iπZ/4} ⊗ e^{iπX/4}) CX (H ⊗ I).
+fn push_one(circuit: &mut Circuit, form: &Canonical, wires: [usize; 2]) -> f64 {
+    let ([l0, l1], [r0, r1]) = (&form.left, &form.right);
+    let h = euler::hadamard();
+    let turn = Matrix::from_diagonal(&[C64::cis(FRAC_PI_4), C64::cis(-FRAC_PI_4)]);
+    let before = push_local(circuit, [&(&h * r0), r1], wires);
+    circuit.cx(wires[0], wires[1]);
+    let first = &(l0 * &h) * &turn;
+    let second = &(&(l1 * &h) * &turn) * &h;
+    before + push_local(circuit, [&first, &second], wires) - FRAC_PI_4
+}
+
+/// exp(i(x XX + z ZZ)) = CX (e^{ixX} ⊗ e^{izZ}) CX.
+fn push_two(circuit: &mut Circuit, form: &Canonical, wires: [usize; 2]) -> f64 {
+    let ([l0, l1], [r0, r1], [x, _, z]) = (&form.left, &form.right, form.xyz);
+    let [first, second] = wires;
+    let before = push_local(circuit, [r0, r1], wires);
+    circuit.cx(first, second);
+    circuit.push(Gate::Rx(-2.0 * x), &[first]);
+    circuit.push(Gate::Rz(-2.0 * z), &[second]);
+    circuit.cx(first, second);
+    before + push_local(circuit, [l0, l1], wires)
+}
+
+/// Three CX, the outer two pointing up; after Vatan, Williams 2004.
+fn push_three(circuit: &mut Circuit, form: &Canonical, wires: [usize; 2]) -> f64 {
+    let ([l0, l1], [r0, r1], [x, y, z]) = (&form.left, &form.right, form.xyz);
+    let [first, second] = wires;
+    let s = Matrix::from_diagonal(&[C64::ONE, C64::I]);
+    let before = push_local(circuit, [r0, &(&s.adjoint() * r1)], wires);
+    circuit.cx(second, first);
+    circuit.push(Gate::Rz(FRAC_PI_2 - 2.0 * z), &[first]);
+    circuit.push(Gate::Ry(2.0 * x - FRAC_PI_2), &[second]);
+    circuit.cx(first, second);
+    circuit.push(Gate::Ry(FRAC_PI_2 - 2.0 * y), &[second]);
+    circuit.cx(second, first);
+    before + push_local(circuit, [&(l0 * &s), l1], wires) + FRAC_PI_4
 }
 
 #[cfg(test)]
