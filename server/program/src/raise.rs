@@ -6,7 +6,7 @@ mod text;
 
 use grammar::TextSize;
 use grammar::nodes::NodeExt;
-use operator::{Circuit, Gate};
+use operator::Circuit;
 
 use crate::file::SourceFile;
 use crate::finding::Edit;
@@ -38,9 +38,9 @@ pub(crate) fn newline(text: &str) -> &'static str {
     }
 }
 
-/// The costs of a circuit as it is written.
+/// The costs of a circuit, for the comment above it.
 fn costs(circuit: &Circuit) -> String {
-    let cx = |gate: &Gate, controls: usize| matches!(gate, Gate::X) && controls == 1;
-    let count = circuit.steps.iter().filter(|s| cx(&s.gate, s.controls.len())).count();
-    format!("{count} CX, {} gates", circuit.steps.len())
+    let counts = operator::counts::counts(circuit);
+    let cx = counts.cx.map_or_else(|| "CX unknown".to_owned(), |cx| format!("{cx} CX"));
+    format!("{cx}, depth {}", counts.depth)
 }

@@ -1,6 +1,8 @@
 //! Whole analyses: what is found in a text, and what is not.
 
 mod findings;
+mod lowering;
+mod measuring;
 mod raising;
 mod values;
 

@@ -165,7 +165,8 @@ impl<'a> Machine<'a> {
                 let known = |f: &Finding| {
                     (f.code, f.file, f.range) == (finding.code, finding.file, finding.range)
                 };
-                if !self.findings.iter().any(known) {
+                let room = self.findings.len() < self.facts.limits.findings;
+                if room && !self.findings.iter().any(known) {
                     self.findings.push(finding);
                 }
                 Ok(())

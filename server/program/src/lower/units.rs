@@ -32,6 +32,18 @@ impl Machine<'_> {
                 Err(what) => unknown = Some(what),
             }
         }
+        for modifier in &call.modifiers {
+            if let Modifier::Power(exponent) = modifier
+                && let Err(what) = self.parameter(statement, exponent)?
+            {
+                unknown = Some(what);
+            }
+        }
+        if self.building()
+            && let Some(what) = unknown.filter(|what| *what != BROKEN)
+        {
+            return Ok(Some(what));
+        }
         if self.well_formed(call) && operands.len() == call.operands.len() {
             let parameters_known = params.len() == call.arguments.len();
             return self.instances(statement, call, &operands, parameters_known.then_some(&params));
@@ -113,8 +125,7 @@ impl Machine<'_> {
         let pick = |operand: &Wires, k: usize| operand.wires[if operand.register { k } else { 0 }];
         let unit = match (self.mode, params) {
             (Mode::Build(..), Some(params)) => Some(self.unit(statement, call, params)?),
-            (Mode::Build(..), None) => return Ok(Some("a value that is not known")),
-            (Mode::Check, _) => None,
+            (Mode::Build(..), None) | (Mode::Check, _) => None,
         };
         for k in 0..count {
             let wires: Vec<usize> = operands.iter().map(|operand| pick(operand, k)).collect();

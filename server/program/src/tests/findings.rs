@@ -59,6 +59,7 @@ fn wrong_programs_are_told_where() {
         ("const int n = 1 / 0;", &["type-mismatch: 1 / 0"]),
         ("const int n = 2.5;", &["type-mismatch: 2.5"]),
         ("qubit q; rx(q) q;", &["type-mismatch: q"]),
+        ("qubit q; pow(1im) @ x q;", &["type-mismatch: 1im"]),
         ("qubit q; bit b; x b;", &["type-mismatch: b"]),
         ("qubit q; gate g a { x q; }", &["not-allowed-in-gate: q"]),
         ("gate g a { bit b; }", &["not-allowed-in-gate: bit b;"]),

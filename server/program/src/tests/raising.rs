@@ -61,7 +61,7 @@ fn the_gate_is_rewritten_in_place() {
             2.5,
             expect![[r#"
             // what it is
-            // dilation: 1 ancilla, 1 CX, 2 gates, measured error 1.2e-15
+            // dilation: 1 ancilla, 1 CX, depth 2, measured error 1.2e-15
             @cantle.encodes m ancilla 1 scale 2.5 within 1e-8
             gate step a0, t {
                 ry(pi/3) a0;
@@ -74,7 +74,7 @@ fn the_gate_is_rewritten_in_place() {
             1.0,
             expect![[r#"
             // what it is
-            // dilation: no ancilla, 1 CX, 2 gates, measured error 1.2e-15
+            // dilation: no ancilla, 1 CX, depth 2, measured error 1.2e-15
             @cantle.equals m within 1e-8
             gate step t {
                 ry(pi/3) t;
@@ -97,7 +97,7 @@ fn line_endings_indentation_and_comments_are_kept() {
     let new = apply_edits(text, &edits(&analyse(text), 1).expect("edits"));
     expect![[r#"
         include "stdgates.inc";\r
-        // dilation: 1 ancilla, 1 CX, 2 gates, measured error 1.2e-15\r
+        // dilation: 1 ancilla, 1 CX, depth 2, measured error 1.2e-15\r
         @cantle.encodes m ancilla 1 scale 2.5 within 1e-8\r
         	gate step a_0, a0 { /* soon */\r
         		ry(pi/3) a_0;\r
