@@ -6,6 +6,7 @@
 pub mod disk;
 pub mod error;
 pub mod lsp;
+pub mod replace;
 
 mod checks;
 mod config;

@@ -26,6 +26,7 @@ mod client;
 mod document;
 mod intake;
 mod lanes;
+mod memo;
 mod outbox;
 mod pending;
 mod refresh;

@@ -4,9 +4,15 @@
 //! announces is built from the same list, so nothing is announced that is
 //! not served.
 
+mod code_actions;
+mod code_lenses;
 mod completion;
 mod definition;
+mod hover;
+mod inlay_hints;
 mod references;
+mod replace_command;
+mod resolve_action;
 mod symbols;
 
 use serde_json::Value;
@@ -70,9 +76,15 @@ impl Route {
 
 /// All requests that we serve, apart from the session's own.
 pub(crate) static ROUTES: &[Route] = &[
+    Route::of::<code_actions::CodeActions>(),
+    Route::of::<code_lenses::CodeLenses>(),
     Route::of::<completion::Completion>(),
     Route::of::<definition::Definition>(),
+    Route::of::<hover::Hover>(),
+    Route::of::<inlay_hints::InlayHints>(),
     Route::of::<references::References>(),
+    Route::of::<replace_command::ReplaceCommand>(),
+    Route::of::<resolve_action::ResolveAction>(),
     Route::of::<symbols::Symbols>(),
     #[cfg(test)]
     Route::of::<probes::Panic>(),

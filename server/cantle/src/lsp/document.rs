@@ -65,6 +65,11 @@ impl Document {
         })
     }
 
+    /// The files that an analysis of this text may read.
+    pub(crate) fn files(&self) -> &Disk {
+        &self.files
+    }
+
     /// Whether the analysis read the file at `path`, misses an include, or
     /// is still to be made from files as they were.
     pub(crate) fn depends_on(&self, path: &str) -> bool {

@@ -3,13 +3,15 @@
 use std::collections::BTreeMap;
 use std::sync::{Arc, Mutex};
 
+use encode::Prefer;
 use grammar::TextSize;
-use operator::Budget;
+use operator::{Budget, Matrix};
 use ropey::Rope;
 use tower_lsp::lsp_types::{TextDocumentPositionParams, Url};
 
 use super::document::path_of;
 use super::lanes::Lanes;
+use super::memo::Memo;
 use super::outbox::Outbox;
 use super::pending::Pending;
 use super::{ClientProfile, Document, locked, refresh};
@@ -25,9 +27,14 @@ pub(crate) struct Session {
     pub outbox: Outbox,
     /// Where work runs.
     pub lanes: Lanes,
+    /// Candidates by what they were made for.
+    pub outcomes: Memo<Encoding, encode::Outcome>,
     pub(super) pending: Pending,
     state: Mutex<State>,
 }
+
+/// What candidates depend on: matrix, tolerance, preference, size limit.
+pub(crate) type Encoding = (Arc<Matrix>, f64, Prefer, usize);
 
 /// Where the session is in the protocol's life cycle.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
@@ -106,6 +113,7 @@ impl Session {
         Session {
             outbox,
             lanes: Lanes::default(),
+            outcomes: Memo::default(),
             pending: Pending::default(),
             state: Mutex::default(),
         }
