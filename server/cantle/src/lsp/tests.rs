@@ -2,6 +2,7 @@
 
 mod documents;
 mod driver;
+mod features;
 mod lifecycle;
 mod malformed;
 pub(crate) mod probes;

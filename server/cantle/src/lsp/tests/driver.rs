@@ -160,3 +160,49 @@ pub(crate) fn range(from: (u32, u32), to: (u32, u32)) -> Value {
     let at = |(line, character): (u32, u32)| json!({ "line": line, "character": character });
     json!({ "start": at(from), "end": at(to) })
 }
+
+/// A text after the protocol's edits of it, positions in UTF-16: the way a
+/// client applies them, written apart from the server's own conversion.
+pub(crate) fn applied(text: &str, edits: &Value) -> String {
+    let offset = |position: &Value| {
+        let number = |name: &str| position[name].as_u64().expect("a number") as usize;
+        let mut start = 0;
+        for _ in 0..number("line") {
+            start += text[start..].find('\n').expect("a line") + 1;
+        }
+        let mut units = 0;
+        for (at, character) in text[start..].char_indices() {
+            if units >= number("character") || character == '\n' {
+                return start + at;
+            }
+            units += character.len_utf16();
+        }
+        text.len()
+    };
+    let edits = edits.as_array().expect("edits");
+    let mut edits: Vec<(usize, usize, &str)> = edits
+        .iter()
+        .map(|edit| {
+            let range = &edit["range"];
+            let text = edit["newText"].as_str().expect("a text");
+            (offset(&range["start"]), offset(&range["end"]), text)
+        })
+        .collect();
+    // From the end, so that what is left keeps its place; a stable sort and
+    // a reversal keep insertions at one place in order.
+    edits.sort_by_key(|&(start, end, _)| (start, end));
+    let mut out = text.to_owned();
+    for &(start, end, text) in edits.iter().rev() {
+        out.replace_range(start..end, text);
+    }
+    out
+}
+
+/// The position of a piece of text, columns in UTF-16.
+pub(crate) fn place(text: &str, piece: &str) -> (u32, u32) {
+    let at = text.find(piece).expect("the piece is in the text");
+    let line = text[..at].matches('\n').count();
+    let start = text[..at].rfind('\n').map_or(0, |end| end + 1);
+    let column = text[start..at].encode_utf16().count();
+    (u32::try_from(line).expect("small"), u32::try_from(column).expect("small"))
+}
