@@ -70,8 +70,10 @@ pub(crate) fn offset(text: &Rope, position: Position, encoding: Encoding) -> usi
 pub(crate) fn position(text: &Rope, offset: usize, encoding: Encoding) -> Position {
     let offset = offset.min(text.len_bytes());
     let line = text.byte_to_line(offset);
-    let slice = text.line(line);
-    let inside = slice.byte_to_char(offset - text.line_to_byte(line));
+    let slice = without_line_end(text.line(line));
+    // Between CR and LF is the end of the line, too.
+    let inside = (offset - text.line_to_byte(line)).min(slice.len_bytes());
+    let inside = slice.byte_to_char(inside);
     let column = match encoding {
         Encoding::Utf8 => slice.char_to_byte(inside),
         Encoding::Utf16 => slice.char_to_utf16_cu(inside),
@@ -103,4 +105,52 @@ fn without_line_end(line: RopeSlice<'_>) -> RopeSlice<'_> {
         length -= 1;
     }
     line.slice(..length)
+}
+
+#[cfg(test)]
+mod tests {
+    use grammar::{Columns, LineColumn, LineIndex};
+    use proptest::prelude::*;
+
+    use super::*;
+
+    const UNITS: [(Encoding, Columns); 3] = [
+        (Encoding::Utf8, Columns::Utf8),
+        (Encoding::Utf16, Columns::Utf16),
+        (Encoding::Utf32, Columns::Utf32),
+    ];
+
+    proptest! {
+        #![proptest_config(ProptestConfig::with_cases(200))]
+
+        /// Against the line index of `grammar`, which is written without a rope.
+        #[test]
+        fn agrees_with_the_line_index(text in "[a\u{3c0}\u{221e}\u{1d6fc}\r\n ]{0,40}") {
+            let (rope, index) = (Rope::from_str(&text), LineIndex::new(&text));
+            for (encoding, columns) in UNITS {
+                for at in 0..=text.len() + 2 {
+                    let size = TextSize::new(u32::try_from(at).unwrap_or(0));
+                    let theirs = index.line_column(&text, size, columns);
+                    let ours = position(&rope, at, encoding);
+                    prop_assert_eq!((ours.line, ours.character), (theirs.line, theirs.column));
+                }
+                for line in 0..8 {
+                    for column in 0..12 {
+                        let place = LineColumn { line, column };
+                        let theirs = usize::from(index.offset(&text, place, columns));
+                        let ours = offset(&rope, Position::new(line, column), encoding);
+                        prop_assert_eq!(ours, theirs, "{:?} {}:{}", encoding, line, column);
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn a_reversed_range_is_turned_round() {
+        let text = Rope::from_str("abc\ndef");
+        let reversed = Range::new(Position::new(1, 1), Position::new(0, 2));
+        let turned = text_range(&text, reversed, Encoding::Utf16);
+        assert_eq!(turned, TextRange::new(TextSize::new(2), TextSize::new(5)));
+    }
 }

@@ -144,7 +144,7 @@ async fn hovers_show_the_operator_in_operand_order() {
     let turn = hover(&mut editor, BENCH, "turn").await;
     assert!(turn.contains("0.7071   0.7071\n0.7071  -0.7071"), "{turn}");
     let step = hover(&mut editor, BENCH, "twice tray").await;
-    assert!(step.contains("gate twice a, b") && step.contains("not shown") == false, "{step}");
+    assert!(step.contains("gate twice a, b") && !step.contains("not shown"), "{step}");
     let stand_in = hover(&mut editor, BENCH, "step t1").await;
     assert!(stand_in.contains("Stand-in for `bench`"), "{stand_in}");
     assert!(stand_in.contains("2  -1   0   0\n-1   2  -1   0"), "{stand_in}");
