@@ -3,6 +3,7 @@
 mod documents;
 mod driver;
 mod features;
+mod includes;
 mod lifecycle;
 mod malformed;
 pub(crate) mod probes;

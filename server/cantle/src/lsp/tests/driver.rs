@@ -114,7 +114,12 @@ impl Editor {
 
     /// Opens a text under `file:///demo/NAME` at version 1.
     pub(crate) async fn open(&mut self, name: &str, text: &str) {
-        let item = json!({ "uri": uri(name), "languageId": "qasm", "version": 1, "text": text });
+        self.open_at(&uri(name), text).await;
+    }
+
+    /// Opens a text under any name at version 1.
+    pub(crate) async fn open_at(&mut self, uri: &str, text: &str) {
+        let item = json!({ "uri": uri, "languageId": "qasm", "version": 1, "text": text });
         self.tell("textDocument/didOpen", json!({ "textDocument": item })).await;
     }
 

@@ -290,3 +290,19 @@ async fn names_lead_to_their_declarations_and_uses() {
         offered.as_array().expect("items").iter().filter_map(|i| i["label"].as_str()).collect();
     assert!(["h", "cx", "step", "tray", "bench"].iter().all(|name| labels.contains(name)));
 }
+
+#[tokio::test]
+async fn a_quick_fix_mends_what_it_is_offered_for() {
+    let text = "OPENQASM 3.0;\nqubit q;\nh q;\n";
+    let mut editor = Editor::start(json!({})).await;
+    editor.open("a", text).await;
+    let found = diagnostics(&mut editor, 1).await;
+    assert_eq!(found[0]["code"], "unknown-name", "{found}");
+    let fixes = actions(&mut editor, text, "h q", json!(["quickfix"])).await;
+    assert_eq!(fixes[0]["kind"], "quickfix", "{fixes:?}");
+    assert_eq!(fixes[0]["diagnostics"][0], found[0]);
+    let mended = applied(text, &fixes[0]["edit"]["changes"][uri("a")]);
+    assert!(mended.contains("include \"stdgates.inc\";"), "{mended}");
+    editor.change("a", 2, json!([{ "text": mended }])).await;
+    assert_eq!(diagnostics(&mut editor, 2).await, json!([]));
+}
