@@ -24,6 +24,7 @@ mod error;
 mod gates;
 mod matrix;
 pub mod norm;
+pub mod portrait;
 pub mod structure;
 pub mod success;
 
