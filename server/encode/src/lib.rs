@@ -23,6 +23,7 @@ mod candidate;
 mod error;
 mod method;
 mod methods;
+mod sum;
 mod synthesis;
 mod target;
 mod verify;

@@ -6,6 +6,7 @@ mod dilation;
 mod euler;
 mod kak;
 mod kronecker_sum;
+mod pauli_sum;
 
 use crate::Method;
 
@@ -17,4 +18,5 @@ pub static METHODS: &[&dyn Method] = &[
     &diagonal::Diagonal,
     &dilation::Dilation,
     &kronecker_sum::KroneckerSum,
+    &pauli_sum::PauliSum,
 ];
