@@ -194,7 +194,7 @@ impl<'a> Search<'a> {
     fn new(tensor: Tensor, goal: f64, allowance: Allowance, budget: &'a Budget) -> Self {
         let real = tensor.is_real().then(|| tensor.data.iter().map(|z| z.re).collect());
         let small = tensor.modes <= MOST_FITTED_QUBITS;
-        let least = if small { tensor.flattening_rank(RANK_SHARE.max(goal)) } else { 1 };
+        let least = if small { tensor.flattening_rank(RANK_SHARE.max(goal)).max(1) } else { 1 };
         let (solutions, curve) = (Vec::new(), Vec::new());
         Search {
             tensor,

@@ -19,14 +19,16 @@ use crate::{Draft, euler, mux};
 
 /// Most terms a sum may have: the index register stays within five qubits.
 pub(crate) const MOST_TERMS: usize = 32;
-/// Most terms for which a one-hot index is proposed: it takes one ancilla
-/// for each of them.
-const MOST_FLAGS: usize = 24;
-/// Placings of the terms on the index that are tried where all factors are
-/// unitary: a good one takes a third fewer CX.
-const PLACINGS: usize = 1000;
+/// Most wires of a one-hot circuit, signal wires counted twice: measuring it
+/// takes its columns, `2^(flags + 2n)` amplitudes in all, and should be done
+/// in a fraction of a second.
+const MOST_FLAGGED: usize = 20;
+/// Multiplexed factors (index values times qubits) that are looked at while
+/// placings of the terms on the index are tried, where all factors are
+/// unitary: a good placing takes a third fewer CX.
+const PLACED_FACTORS: usize = 30_000;
 /// The same where they are not: hardly any multiplexed gate is simple then.
-const DAMPED_PLACINGS: usize = 150;
+const PLACED_DAMPED: usize = 4_000;
 /// CX that a placing may cost more than the one before, at first.
 const HEAT: f64 = 2.0;
 /// ‖M†M − c‖ below this share of c: the matrix is unitary up to a factor.
@@ -125,7 +127,8 @@ pub(crate) fn binary(
     let mut least = prepare::two_qubit_gates(&best);
     let mut cost = least;
     let mut rng = fastrand::Rng::with_seed(sum.size() as u64);
-    let placings = if sum.damped.is_empty() { PLACINGS } else { DAMPED_PLACINGS };
+    let factors = if sum.damped.is_empty() { PLACED_FACTORS } else { PLACED_DAMPED };
+    let placings = factors / (sum.size() * wires.max(1));
     for step in 0..placings {
         budget.poll()?;
         let (i, j) = (rng.usize(0..slots.len()), rng.usize(0..slots.len()));
@@ -275,7 +278,7 @@ impl Site<'_> {
 /// multiple of the identity, one if it is a reflection.
 pub(crate) fn one_hot(solution: &Decomposition, wires: usize, note: &str) -> Option<Draft> {
     let flags = solution.rank();
-    if !(2..=MOST_FLAGS).contains(&flags) {
+    if flags < 2 || flags + 2 * wires > MOST_FLAGGED {
         return None;
     }
     let scale = solution.scale();

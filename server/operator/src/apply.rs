@@ -35,7 +35,7 @@ pub fn evaluate(circuit: &Circuit, budget: &Budget) -> Result<Matrix> {
 /// # Errors
 /// As [`evaluate`].
 pub fn evaluate_columns(circuit: &Circuit, columns: &[usize], budget: &Budget) -> Result<Matrix> {
-    budget.admit(circuit.wires)?;
+    budget.admit_columns(circuit.wires, columns.len())?;
     let mut states = Matrix::zeros(1 << circuit.wires, columns.len());
     columns.iter().enumerate().for_each(|(k, &column)| states[(column, k)] = C64::ONE);
     apply(circuit, &mut states, budget)?;
@@ -48,8 +48,10 @@ pub fn evaluate_columns(circuit: &Circuit, columns: &[usize], budget: &Budget) -
 /// # Errors
 /// As [`evaluate`].
 pub fn encoded_columns(circuit: &Circuit, ancillas: usize, budget: &Budget) -> Result<Matrix> {
-    budget.admit(circuit.wires)?;
-    let columns: Vec<usize> = (0..1 << (circuit.wires - ancillas)).collect();
+    // The signal wires are counted before their columns are listed.
+    let signal = circuit.wires - ancillas;
+    budget.admit(signal)?;
+    let columns: Vec<usize> = (0..1 << signal).collect();
     evaluate_columns(circuit, &columns, budget)
 }
 

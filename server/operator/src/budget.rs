@@ -42,6 +42,17 @@ impl Budget {
         if self.is_stopped() { Err(Error::Stopped) } else { Ok(()) }
     }
 
+    /// Refuses a number of columns on `wires` wires, each of `2^wires`
+    /// amplitudes, that takes more memory than a dense operator on
+    /// [`Budget::max_wires`] does.
+    pub fn admit_columns(&self, wires: usize, columns: usize) -> Result<()> {
+        let column_wires = columns.max(1).next_power_of_two().trailing_zeros() as usize;
+        if wires + column_wires > 2 * self.max_wires {
+            return Err(Error::TooLarge { wires, limit: self.max_wires });
+        }
+        self.poll()
+    }
+
     /// Refuses a dense operator on more wires than allowed, before any of
     /// its memory is taken.
     pub fn admit(&self, wires: usize) -> Result<()> {

@@ -192,6 +192,12 @@ fn a_raised_flag_stops_the_search() {
 }
 
 #[test]
+fn a_tolerance_above_the_matrix_is_no_trouble() {
+    let found = decompose(&laplacian(3), 3, 1e9, ALLOWANCE, &Budget::default()).unwrap();
+    assert_eq!((found.least, found.solutions[0].rank()), (1, 1));
+}
+
+#[test]
 fn zero_has_no_terms_and_dense_matrices_are_left_alone() {
     assert!(search(&Matrix::zeros(4, 4)).solutions.is_empty());
     let mut rng = fastrand::Rng::with_seed(2);

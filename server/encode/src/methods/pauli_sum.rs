@@ -66,7 +66,8 @@ fn largest(coefficients: &[C64], allowed: f64) -> (Vec<usize>, f64) {
     order.sort_by(|&a, &b| coefficients[b].norm().total_cmp(&coefficients[a].norm()));
     let most = order.first().map_or(0.0, |&at| coefficients[at].norm());
     let mut error = 0.0;
-    while let Some(&last) = order.last() {
+    // One term always stays, however large the error that is allowed.
+    while let [_, .., last] = order[..] {
         let size = coefficients[last].norm();
         if error + size > allowed && size > ZERO_SHARE * most {
             break;
@@ -163,6 +164,13 @@ mod tests {
         let m = sum(2, &[(c(1.0), 3), (c(0.5), 12), (c(2e-7), 5), (c(1e-7), 10)]);
         assert_eq!(drafts(&m, 1e-6).unwrap()[0].ancillas, 1);
         assert_eq!(drafts(&m, 1e-9).unwrap()[0].ancillas, 2);
+    }
+
+    #[test]
+    fn one_string_stays_whatever_is_allowed() {
+        let m = sum(2, &[(C64::from(1e-3), 3), (C64::from(2e-3), 12)]);
+        let [draft, ..] = &drafts(&m, 1.0).unwrap()[..] else { panic!("no draft") };
+        assert_eq!(draft.ancillas, 0);
     }
 
     #[test]
