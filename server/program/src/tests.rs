@@ -4,6 +4,7 @@ mod findings;
 mod lowering;
 mod measuring;
 mod raising;
+mod strange;
 mod values;
 
 use std::collections::BTreeMap;

@@ -90,6 +90,21 @@ impl Raiser<'_> {
         &line[..blank]
     }
 
+    /// What one more level of blocks is indented by: as the first indented
+    /// line of the file has it, else as the formatter does.
+    fn indentation(&self) -> &str {
+        /// The formatter's own.
+        const FORMATTED: &str = "    ";
+        let mut lines = self.text.lines();
+        let blank = |line: &str| line.len() - line.trim_start_matches([' ', '\t']).len();
+        let first = lines.find(|line| blank(line) > 0 && !line.trim().is_empty());
+        match first.map(|line| &line[..blank(line)]) {
+            Some(blanks) if blanks.starts_with('\t') => "\t",
+            Some(blanks) if blanks.len() <= 8 => blanks,
+            _ => FORMATTED,
+        }
+    }
+
     /// The gate itself: its claim, its ancillas, its body.
     fn gate(&self, gate: usize, edits: &mut Vec<Edit>) -> Result<(), Cannot> {
         let def = &self.facts.gates[gate];
@@ -110,7 +125,7 @@ impl Raiser<'_> {
         }
         let names: Vec<String> = ancillas.into_iter().chain(def.operands.iter().cloned()).collect();
         let indent = self.indent(def.head_end);
-        let step = if indent.contains('\t') { "\t" } else { "    " };
+        let step = self.indentation();
         let mut lines = String::new();
         let statements = statements(&self.with.circuit, &names)?;
         self.nothing_hidden(def, &statements)?;

@@ -60,27 +60,27 @@ fn the_gate_is_rewritten_in_place() {
             1,
             2.5,
             expect![[r#"
-            // what it is
-            // dilation: 1 ancilla, 1 CX, depth 2, measured error 1.2e-15
-            @cantle.encodes m ancilla 1 scale 2.5 within 1e-8
-            gate step a0, t {
-                ry(pi/3) a0;
-                cx a0, t;
-            }
-        "#]],
+                // what it is
+                // dilation: 1 ancilla, 1 CX, depth 2, measured error 1.2e-15
+                @cantle.encodes m ancilla 1 scale 2.5 within 1e-8
+                gate step a0, t {
+                    ry(pi/3) a0;
+                    cx a0, t;
+                }
+            "#]],
         ),
         (
             0,
             1.0,
             expect![[r#"
-            // what it is
-            // dilation: no ancilla, 1 CX, depth 2, measured error 1.2e-15
-            @cantle.equals m within 1e-8
-            gate step t {
-                ry(pi/3) t;
-                cx t, t;
-            }
-        "#]],
+                // what it is
+                // dilation: no ancilla, 1 CX, depth 2, measured error 1.2e-15
+                @cantle.equals m within 1e-8
+                gate step t {
+                    ry(pi/3) t;
+                    cx t, t;
+                }
+            "#]],
         ),
     ] {
         let with = Replacement { scale, ..circuit(ancillas, 1) };
