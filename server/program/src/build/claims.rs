@@ -7,7 +7,7 @@ use grammar::TextRange;
 
 use super::Builder;
 use super::annotations::Note;
-use crate::annotation::{Annotation, MatrixNote, Spanned};
+use crate::annotation::{Annotation, MatrixNote, Number, Spanned};
 use crate::finding::{FileId, Finding};
 use crate::model::{Claim, ClaimKind, Property, StandIn, Subject};
 use crate::symbols::SymbolKind;
@@ -39,60 +39,23 @@ impl Builder<'_> {
         for note in notes {
             if !fits(&note.annotation, subject) {
                 rest.push(note);
-                continue;
+            } else if let Annotation::Matrix(MatrixNote::Properties(properties)) = note.annotation {
+                for property in properties {
+                    let stated = Stated::of(ClaimKind::Property(property));
+                    self.push_claim(stated, note.range, subject, empty_body);
+                }
+            } else if let Some(stated) = stated(note.annotation) {
+                if let ClaimKind::Clean { .. } = &stated.kind {
+                    self.check_operands(&stated.operands, subject);
+                }
+                self.push_claim(stated, note.range, subject, empty_body);
             }
-            let (kind, name, tolerance_text) = match note.annotation {
-                Annotation::Dense { matrix, within } => {
-                    let text = within.as_ref().map(|within| within.text.clone());
-                    let within = within.map(|within| within.value);
-                    (ClaimKind::Dense { matrix: matrix.value.clone(), within }, Some(matrix), text)
-                }
-                Annotation::Encodes(fields) => {
-                    let kind = ClaimKind::Encodes {
-                        matrix: fields.matrix.value.clone(),
-                        ancilla: fields.ancilla.map(|number| number.value as usize),
-                        scale: fields.scale.map(|number| number.value),
-                        within: fields.within.map(|number| number.value),
-                    };
-                    (kind, Some(fields.matrix), None)
-                }
-                Annotation::Equals { of, exact_phase, within } => {
-                    let within = within.map(|number| number.value);
-                    (
-                        ClaimKind::Equals { of: of.value.clone(), exact_phase, within },
-                        Some(of),
-                        None,
-                    )
-                }
-                Annotation::Clean(operands) => {
-                    self.check_operands(&operands, subject);
-                    let operands = operands.into_iter().map(|operand| operand.value).collect();
-                    (ClaimKind::Clean { operands }, None, None)
-                }
-                Annotation::Budget(budget) => (ClaimKind::Budget(budget), None, None),
-                Annotation::Matrix(MatrixNote::Properties(properties)) => {
-                    for property in properties {
-                        let kind = ClaimKind::Property(property);
-                        self.push_claim(kind, note.range, subject, None, None, empty_body);
-                    }
-                    continue;
-                }
-                _ => continue,
-            };
-            self.push_claim(kind, note.range, subject, name, tolerance_text, empty_body);
         }
         rest
     }
 
-    fn push_claim(
-        &mut self,
-        kind: ClaimKind,
-        range: TextRange,
-        subject: Subject,
-        name: Option<Spanned<String>>,
-        tolerance_text: Option<String>,
-        empty_body: bool,
-    ) {
+    fn push_claim(&mut self, stated: Stated, range: TextRange, subject: Subject, empty_body: bool) {
+        let Stated { kind, name, tolerance_text, .. } = stated;
         let name_range = name.as_ref().map(|name| name.range);
         let claim = Claim { kind, file: self.file, range, name_range, subject };
         self.pending.push(Pending { claim, tolerance_text, name, empty_body });
@@ -236,6 +199,59 @@ impl Builder<'_> {
         };
         self.report(finding);
     }
+}
+
+/// What one annotation states.
+struct Stated {
+    kind: ClaimKind,
+    /// The matrix or gate that is named.
+    name: Option<Spanned<String>>,
+    /// The tolerance of a stand-in as written.
+    tolerance_text: Option<String>,
+    /// The operands of `@cantle.clean`.
+    operands: Vec<Spanned<String>>,
+}
+
+impl Stated {
+    fn of(kind: ClaimKind) -> Self {
+        Stated { kind, name: None, tolerance_text: None, operands: Vec::new() }
+    }
+
+    fn naming(kind: ClaimKind, name: Spanned<String>) -> Self {
+        Stated { name: Some(name), ..Stated::of(kind) }
+    }
+}
+
+/// The claim in an annotation about a gate or a block, if it is one.
+fn stated(annotation: Annotation) -> Option<Stated> {
+    let value = |number: Number| number.value;
+    Some(match annotation {
+        Annotation::Dense { matrix, within } => {
+            let tolerance_text = within.as_ref().map(|within| within.text.clone());
+            let kind = ClaimKind::Dense { matrix: matrix.value.clone(), within: within.map(value) };
+            Stated { tolerance_text, ..Stated::naming(kind, matrix) }
+        }
+        Annotation::Encodes(fields) => {
+            let kind = ClaimKind::Encodes {
+                matrix: fields.matrix.value.clone(),
+                ancilla: fields.ancilla.map(|number| number.value as usize),
+                scale: fields.scale.map(value),
+                within: fields.within.map(value),
+            };
+            Stated::naming(kind, fields.matrix)
+        }
+        Annotation::Equals { of, exact_phase, within } => {
+            let within = within.map(value);
+            let kind = ClaimKind::Equals { of: of.value.clone(), exact_phase, within };
+            Stated::naming(kind, of)
+        }
+        Annotation::Clean(operands) => {
+            let names = operands.iter().map(|operand| operand.value.clone()).collect();
+            Stated { operands, ..Stated::of(ClaimKind::Clean { operands: names }) }
+        }
+        Annotation::Budget(budget) => Stated::of(ClaimKind::Budget(budget)),
+        Annotation::Matrix(_) | Annotation::Sample(_) | Annotation::Allow(_) => return None,
+    })
 }
 
 /// From the name of a gate to the end of its head.
