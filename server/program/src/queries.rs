@@ -4,6 +4,7 @@
 //! Queries about names are immediate; those that take a
 //! [`Budget`](operator::Budget) do arithmetic and belong on a worker.
 
+mod call;
 mod claims;
 mod complete;
 mod grid;
@@ -22,3 +23,6 @@ pub use hover::{Block, Hover, hover};
 pub use navigate::{Place, definition, references};
 pub use outline::{OutlineItem, outline};
 pub use stand_ins::{stand_in_at, stand_ins};
+
+#[cfg(test)]
+mod tests;

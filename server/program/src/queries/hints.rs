@@ -50,8 +50,11 @@ fn label(program: &Program, index: usize, budget: &Budget) -> Option<String> {
     if gate.operands.len() > MAX_OPERANDS {
         return None;
     }
-    let operator = view(program, index, budget).ok()?.operator.ok()?;
-    Some(portrait::portrait(&operator).to_string())
+    let view = view(program, index, budget).ok()?;
+    let operator = view.operator.ok().filter(|_| !view.chosen)?;
+    let at: Vec<String> =
+        view.at.iter().map(|(name, value)| format!(" at {name} = {}", number(*value))).collect();
+    Some(format!("{}{}", portrait::portrait(&operator), at.join(",")))
 }
 
 /// How a claim about a gate fares: "≈ bench, error 3.1e-15, scale 4, 3 ancillas".

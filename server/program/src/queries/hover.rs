@@ -5,13 +5,14 @@ use grammar::{TextRange, TextSize};
 use operator::counts::Counts;
 use operator::{Budget, Matrix, norm, portrait};
 
+use super::call::about_call;
 use super::claims::{about_gate, about_matrix, verdict};
 use super::grid::{complex, error, grid, number};
-use super::view::{View, view};
+use super::view::{View, at_values, view};
 use crate::{Claim, FileId, GateDef, MatrixDef, Program, Subject, Symbol, SymbolKind};
 
 /// Largest matrix written out: past it lines no longer fit a window.
-const MAX_SHOWN: usize = 8;
+pub(super) const MAX_SHOWN: usize = 8;
 
 /// ‖M†M − I‖ and ‖M − M†‖ (relative to ‖M‖) up to which a matrix is called
 /// unitary or Hermitian: entries typed with nine decimals still are.
@@ -42,7 +43,11 @@ pub enum Block {
 pub fn hover(program: &Program, offset: TextSize, budget: &Budget) -> Option<Hover> {
     if let Some((id, range)) = program.symbol_at(FileId::MAIN, offset) {
         let symbol = program.symbol(id)?;
-        return Some(Hover { range, blocks: about_symbol(program, symbol, budget) });
+        let mut blocks = about_symbol(program, symbol, budget);
+        if symbol.kind == SymbolKind::Gate {
+            blocks.extend(about_call(program, offset, budget));
+        }
+        return Some(Hover { range, blocks });
     }
     let here = |file: FileId, range: TextRange| file == FileId::MAIN && range.contains(offset);
     if let Some(claim) = program.claims().iter().find(|claim| here(claim.file, claim.range)) {
@@ -158,9 +163,10 @@ fn seen(gate: &GateDef, view: &View) -> Vec<Block> {
 
 fn title(view: &View, matrix: &Matrix) -> String {
     let (rows, cols) = (matrix.rows(), matrix.cols());
-    let at: Vec<String> =
-        view.at.iter().map(|(name, value)| format!("`{name}` = {}", number(*value))).collect();
-    let at = if at.is_empty() { String::new() } else { format!(" at {}", at.join(", ")) };
+    let mut at = at_values(&view.at);
+    if view.chosen {
+        at += " (`@cantle.sample` sets other values)";
+    }
     match view.encoding {
         Some((_, 0)) | None => format!("Operator{at}: {}", portrait::portrait(matrix)),
         Some((scale, _)) => {
@@ -181,7 +187,7 @@ fn convention(gate: &GateDef, view: &View) -> String {
 }
 
 fn cost(counts: &Counts) -> String {
-    let cx = counts.cx.map_or("not known".to_owned(), |cx| cx.to_string());
+    let cx = counts.cx.map_or("not known (a stand-in is inside)".to_owned(), |cx| cx.to_string());
     format!(
         "Cost: CX {cx} · one-qubit {} · two-qubit {} · larger {} · depth {} (two-qubit {})",
         counts.one_qubit,
