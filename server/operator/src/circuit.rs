@@ -93,12 +93,24 @@ pub struct Definition {
     /// Body, with parameters already replaced by values.
     pub circuit: Circuit,
     pub(crate) operator: OnceLock<Result<Arc<Matrix>>>,
+    weight: OnceLock<u64>,
 }
 
 impl Definition {
     /// A definition whose operator is not known yet.
     pub fn new(name: impl Into<String>, circuit: Circuit) -> Self {
-        Definition { name: name.into(), circuit, operator: OnceLock::new() }
+        Definition {
+            name: name.into(),
+            circuit,
+            operator: OnceLock::new(),
+            weight: OnceLock::new(),
+        }
+    }
+
+    /// Steps of the body with all calls in it expanded, as far as `u64` goes.
+    pub(crate) fn weight(&self) -> u64 {
+        let steps = || self.circuit.steps.iter().map(|step| step.gate.weight());
+        *self.weight.get_or_init(|| steps().fold(0, u64::saturating_add))
     }
 }
 
@@ -186,6 +198,16 @@ impl Step {
 }
 
 impl Gate {
+    /// Steps that the gate stands for.
+    fn weight(&self) -> u64 {
+        match self {
+            Gate::Call(definition) => definition.weight(),
+            Gate::Inverse(inner) => inner.weight(),
+            Gate::Power(inner, times) => inner.weight().saturating_mul(times.abs().ceil() as u64),
+            _ => 1,
+        }
+    }
+
     /// The adjoint gate, in closed form where there is one.
     pub fn inverse(&self) -> Gate {
         match *self {

@@ -5,13 +5,15 @@
 
 mod cosine_sine;
 mod eigen;
+mod linear;
 mod singular;
 
 pub use cosine_sine::{CosineSine, cosine_sine};
 pub use eigen::{Eigen, UnitaryEigen, eigen_hermitian, eigen_unitary};
-pub use singular::{Svd, svd};
+pub use linear::{qr, solve_hermitian};
+pub use singular::{Svd, singular_values, svd};
 
-use faer::Mat;
+use faer::MatRef;
 
 use crate::{C64, Error, Matrix, Result};
 
@@ -26,6 +28,13 @@ fn accept(residual: f64, size: f64) -> Result<()> {
         return Ok(());
     }
     Err(Error::NoConvergence { iterations: 0, residual: residual / size })
+}
+
+/// `Err` when columns that should be orthonormal are not: a small residual of
+/// the whole product does not show this where singular values are small.
+fn accept_orthonormal(q: &Matrix) -> Result<()> {
+    let size = (q.cols() as f64).sqrt().max(1.0);
+    accept((&(&q.adjoint() * q) - &Matrix::identity(q.cols())).frobenius(), size)
 }
 
 /// `x · 2ᵉ` in two steps, so that the factor itself cannot overflow.
@@ -45,11 +54,11 @@ fn normalised(m: &Matrix) -> Result<(Matrix, i32)> {
     Ok((Matrix::from_fn(m.rows(), m.cols(), entry), e))
 }
 
-fn to_library(m: &Matrix) -> Mat<C64> {
-    Mat::from_fn(m.rows(), m.cols(), |r, c| m[(r, c)])
+fn to_library(m: &Matrix) -> MatRef<'_, C64> {
+    MatRef::from_column_major_slice(m.as_slice(), m.rows(), m.cols())
 }
 
-fn from_library(m: faer::MatRef<'_, C64>) -> Matrix {
+fn from_library(m: MatRef<'_, C64>) -> Matrix {
     Matrix::from_fn(m.nrows(), m.ncols(), |r, c| m[(r, c)])
 }
 

@@ -32,7 +32,7 @@ pub use apply::{apply, encoded_columns, evaluate, evaluate_columns};
 pub use budget::{Budget, DEFAULT_MAX_WIRES};
 pub use circuit::{Circuit, Control, Definition, Gate, Step};
 pub use error::Error;
-pub use gates::gate_matrix;
+pub use gates::{gate_matrix, one_qubit};
 pub use matrix::Matrix;
 
 /// A double-precision complex number, the entry type of every [`Matrix`].

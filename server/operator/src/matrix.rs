@@ -5,9 +5,14 @@
 
 use std::ops::{Add, Index, IndexMut, Mul, Sub};
 
+use faer::linalg::matmul::matmul;
+use faer::{Accum, MatMut, MatRef, Par};
 use nalgebra::DMatrix;
 
 use crate::{C64, Error, Result};
+
+/// Products at least this large on each side are worth a blocked kernel.
+const BLOCKED: usize = 16;
 
 /// A dense complex matrix, stored by columns.
 #[derive(Debug, Clone, PartialEq)]
@@ -170,7 +175,21 @@ impl IndexMut<(usize, usize)> for Matrix {
 impl Mul for &Matrix {
     type Output = Matrix;
     fn mul(self, other: &Matrix) -> Matrix {
-        Matrix(&self.0 * &other.0)
+        if self.rows().min(self.cols()).min(other.cols()) < BLOCKED {
+            return Matrix(&self.0 * &other.0);
+        }
+        assert_eq!(self.cols(), other.rows(), "inner sizes of a product");
+        let (rows, inner, cols) = (self.rows(), self.cols(), other.cols());
+        let mut product = Matrix::zeros(rows, cols);
+        matmul(
+            MatMut::from_column_major_slice_mut(product.as_mut_slice(), rows, cols),
+            Accum::Replace,
+            MatRef::from_column_major_slice(self.as_slice(), rows, inner),
+            MatRef::from_column_major_slice(other.as_slice(), inner, cols),
+            C64::ONE,
+            Par::Seq,
+        );
+        product
     }
 }
 

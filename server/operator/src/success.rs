@@ -1,6 +1,6 @@
 //! The chance that a block encoding succeeds.
 
-use crate::decompose::svd;
+use crate::decompose::singular_values;
 use crate::{Matrix, Result};
 
 /// Probabilities that all ancillas are found in |0⟩ when `M/α` is applied to
@@ -20,7 +20,9 @@ pub struct Success {
 /// # Errors
 /// `NotFinite`, `NoConvergence`.
 pub fn success(m: &Matrix, scale: f64) -> Result<Success> {
-    let chances: Vec<f64> = svd(m)?.sigma.iter().map(|s| (s / scale).powi(2)).collect();
+    // Nothing is encoded by nothing: the zero matrix at scale zero never succeeds.
+    let chance = |s: &f64| if *s == 0.0 { 0.0 } else { (s / scale).powi(2) };
+    let chances: Vec<f64> = singular_values(m)?.iter().map(chance).collect();
     let average = chances.iter().sum::<f64>() / chances.len().max(1) as f64;
     let worst = chances.last().copied().unwrap_or(0.0);
     let best = chances.first().copied().unwrap_or(0.0);

@@ -2,7 +2,7 @@
 
 use std::f64::consts::FRAC_1_SQRT_2;
 
-use super::{accept, svd};
+use super::{accept, qr, svd};
 use crate::{C64, Matrix, Result};
 
 /// `U = (l0 ⊕ l1) [[C, −S], [S, C]] (r0 ⊕ r1)` with `C = diag(cos θ)`,
@@ -60,7 +60,7 @@ pub fn cosine_sine(unitary: &Matrix) -> Result<CosineSine> {
     let mut l0 = reversed(&upper.u);
     let mut r0 = reversed(&upper.v).adjoint();
     let mut cosines: Vec<f64> = upper.sigma.iter().rev().copied().collect();
-    let (mut l1, mut right) = orthonormalised(&(&block(1, 0) * &r0.adjoint()));
+    let (mut l1, mut right) = qr(&(&block(1, 0) * &r0.adjoint()))?;
     let small = cosines.iter().filter(|&&c| c <= FRAC_1_SQRT_2).count();
     if small < half {
         let rest = half - small;
@@ -75,7 +75,7 @@ pub fn cosine_sine(unitary: &Matrix) -> Result<CosineSine> {
         turn_columns(&mut l1, small, &sines.u);
         r0.set_block(small, 0, &(&sines.v.adjoint() * &r0.block(small, 0, rest, half)));
         let weights: Vec<C64> = cosines[small..].iter().map(|&c| C64::new(c, 0.0)).collect();
-        let (q, r) = orthonormalised(&(&Matrix::from_diagonal(&weights) * &sines.v));
+        let (q, r) = qr(&(&Matrix::from_diagonal(&weights) * &sines.v))?;
         turn_columns(&mut l0, small, &q);
         (0..rest).for_each(|k| cosines[small + k] = r[(k, k)].re);
     }
@@ -90,19 +90,6 @@ pub fn cosine_sine(unitary: &Matrix) -> Result<CosineSine> {
 /// Columns in opposite order.
 fn reversed(m: &Matrix) -> Matrix {
     Matrix::from_fn(m.rows(), m.cols(), |r, c| m[(r, m.cols() - 1 - c)])
-}
-
-/// `QR` of a square matrix with the diagonal of `R` real and not negative.
-fn orthonormalised(m: &Matrix) -> (Matrix, Matrix) {
-    let qr = m.0.clone().qr();
-    let (mut q, mut r) = (Matrix(qr.q()), Matrix(qr.r()));
-    for k in 0..m.cols() {
-        let size = r[(k, k)].norm();
-        let phase = if size > 0.0 { r[(k, k)] / size } else { C64::ONE };
-        q.column_mut(k).iter_mut().for_each(|z| *z *= phase);
-        (0..m.cols()).for_each(|c| r[(k, c)] *= phase.conj());
-    }
-    (q, r)
 }
 
 /// The columns from `first` on, times a matrix.

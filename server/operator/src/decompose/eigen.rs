@@ -3,7 +3,7 @@
 
 use nalgebra::Matrix3;
 
-use super::{accept, from_library, normalised, times_power_of_two, to_library};
+use super::{accept, accept_orthonormal, from_library, normalised, times_power_of_two, to_library};
 use crate::{C64, Error, Matrix, Result};
 
 /// `A = V diag(values) V†` of a Hermitian matrix.
@@ -39,6 +39,7 @@ pub fn eigen_hermitian(m: &Matrix) -> Result<Eigen> {
     let diagonal: Vec<C64> = values.iter().map(|&x| C64::new(x, 0.0)).collect();
     let back = &(&vectors * &Matrix::from_diagonal(&diagonal)) * &vectors.adjoint();
     accept((&back - &hermitian).frobenius(), hermitian.frobenius().max(1.0))?;
+    accept_orthonormal(&vectors)?;
     let values = values.into_iter().map(|x| times_power_of_two(x, exponent)).collect();
     Ok(Eigen { values, vectors })
 }
@@ -53,6 +54,10 @@ const SWEEPS: usize = 40;
 
 /// Off-diagonal entries below this are rounding of numbers of modulus one.
 const ROUNDING: f64 = 1e-16;
+
+/// Off-diagonal Frobenius norm, over √n, that the products of a converged
+/// start leave by rounding: sweeping it would remove nothing.
+const DONE: f64 = 1e-14;
 
 /// Below this, what is left off the diagonal and no longer halves is the
 /// rounding of the sweeps themselves.
@@ -74,6 +79,9 @@ pub fn eigen_unitary(m: &Matrix) -> Result<UnitaryEigen> {
     let mut inside = &(&vectors.adjoint() * m) * &vectors;
     let mut left = off_diagonal(&inside);
     for _ in 0..SWEEPS {
+        if left <= DONE * (m.rows() as f64).sqrt() {
+            break;
+        }
         sweep(&mut inside, &mut vectors);
         let now = off_diagonal(&inside);
         if now >= 0.5 * left && now < PLATEAU {

@@ -132,3 +132,99 @@ fn what_is_not_finite_or_not_unitary_is_refused() {
     assert!(matches!(eigen_unitary(&jordan), Err(Error::NoConvergence { .. })));
     assert!(matches!(cosine_sine(&jordan), Err(Error::NoConvergence { .. })));
 }
+
+#[test]
+fn triangular_factors_of_any_shape() {
+    for (rows, cols) in [(1, 1), (4, 4), (5, 3), (3, 5), (16, 16), (20, 7)] {
+        let whole = random(rows.max(cols), 11);
+        for m in [whole.block(0, 0, rows, cols), Matrix::zeros(rows, cols)] {
+            let (q, r) = qr(&m).unwrap();
+            assert!(is_unitary(&q) && (q.rows(), r.rows(), r.cols()) == (rows, rows, cols));
+            assert!((&(&q * &r) - &m).max_abs() < CLOSE);
+            for at in (0..cols).flat_map(|c| (0..rows).map(move |r| (r, c))) {
+                assert!(at.0 < at.1 || (r[at].im == 0.0 && r[at].re >= 0.0));
+                assert!(at.0 <= at.1 || r[at] == C64::ZERO);
+            }
+        }
+    }
+}
+
+#[test]
+fn hermitian_systems_are_solved_or_refused() {
+    for n in [1, 2, 8, 32] {
+        for scale in [1.0, 1e-200, 1e200] {
+            let half = random(n, 21);
+            let a = (&half + &half.adjoint()).scaled(C64::new(scale, 0.0));
+            let x = random(n, 22);
+            let found = solve_hermitian(&a, &(&a * &x)).unwrap();
+            // The error of a solution grows with the condition number, about n² here.
+            assert!((&found - &x).max_abs() < 1e-10, "{n} {scale}");
+        }
+    }
+    let singular = Matrix::from_real(2, 2, &[1.0, 1.0, 1.0, 1.0]);
+    let b = Matrix::from_real(2, 1, &[1.0, 2.0]);
+    assert!(matches!(solve_hermitian(&singular, &b), Err(Error::NoConvergence { .. })));
+    assert!(matches!(solve_hermitian(&singular, &random(3, 1)), Err(Error::BadDimension { .. })));
+}
+
+#[test]
+fn singular_values_alone_are_those_of_the_decomposition() {
+    for (rows, cols, seed) in [(1, 1, 1), (4, 4, 2), (6, 3, 3), (3, 6, 4), (32, 32, 5)] {
+        let m = random(rows.max(cols), seed).block(0, 0, rows, cols);
+        let (alone, whole) = (singular_values(&m).unwrap(), svd(&m).unwrap().sigma);
+        assert_eq!(alone.len(), whole.len());
+        assert!(alone.iter().zip(&whole).all(|(a, b)| (a - b).abs() < CLOSE));
+    }
+}
+
+/// Matrices on which iterations are known to stumble: exact zeros, rank one,
+/// repeated and graded values, tiny couplings.
+#[test]
+fn nasty_matrices_keep_orthonormal_factors() {
+    let graded = |base: f64| move |r: usize, c: usize| base.powi((r * c) as i32 % 300);
+    let real =
+        |f: &dyn Fn(usize, usize) -> f64| Matrix::from_fn(8, 8, |r, c| C64::new(f(r, c), 0.0));
+    let list = [
+        Matrix::zeros(8, 8),
+        real(&|_, _| 1.0),
+        real(&|r, c| if r == 0 && c == 7 { 1.0 } else { 0.0 }),
+        real(&|r, c| if c == r + 1 { 1.0 } else { 0.0 }),
+        real(&|r, c| if r == c { 1.0 } else { 1e-17 }),
+        real(&graded(1e-5)),
+        real(&graded(1e5)),
+        real(&|r, c| 1.0 / (r + c + 1) as f64),
+        real(&|r, c| if r < 2 { f64::MIN_POSITIVE } else { (c as f64) * 1e300 }),
+        Matrix::from_fn(8, 8, |r, c| C64::new(0.0, if (r / 2) == (c / 2) { 1.0 } else { 0.0 })),
+    ];
+    for m in &list {
+        let found = svd(m).unwrap();
+        let size = m.max_abs().max(f64::MIN_POSITIVE);
+        assert!(is_unitary(&found.u) && is_unitary(&found.v), "{m:?}");
+        let back = &found.reconstruct() - m;
+        assert!(back.as_slice().iter().all(|z| z.norm() / size < CLOSE), "{m:?}");
+    }
+}
+
+/// The unitaries that circuits are made of: transforms and Hadamard powers.
+#[test]
+fn cosine_sine_of_transforms() {
+    for n in 1..=6 {
+        let size = 1_usize << n;
+        let root = (size as f64).sqrt().recip();
+        let fourier = Matrix::from_fn(size, size, |r, c| {
+            C64::from_polar(root, std::f64::consts::TAU * (r * c % size) as f64 / size as f64)
+        });
+        let hadamard = Matrix::from_fn(size, size, |r, c| {
+            C64::new(if (r & c).count_ones() % 2 == 0 { root } else { -root }, 0.0)
+        });
+        let noise = random(size, n as u64).scaled(C64::new(1e-9, 0.0));
+        let noisy = norm::nearest_unitary(&(&hadamard + &noise)).unwrap();
+        let blocks = norm::nearest_unitary(&(&Matrix::identity(size) + &noise)).unwrap();
+        for unitary in [fourier, hadamard, noisy, blocks] {
+            let cs = cosine_sine(&unitary).unwrap();
+            assert!([&cs.l0, &cs.l1, &cs.r0, &cs.r1].into_iter().all(is_unitary));
+            assert!((&cs.reconstruct() - &unitary).max_abs() < CLOSE);
+            assert!(cs.theta.iter().all(|t| (0.0..=std::f64::consts::FRAC_PI_2).contains(t)));
+        }
+    }
+}
