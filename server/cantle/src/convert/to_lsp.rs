@@ -16,22 +16,19 @@ use crate::lsp::{ClientProfile, Document};
 /// The name under which clients show what we say.
 pub(crate) const SOURCE: &str = "cantle";
 
-/// A finding about the text itself; `None` for one about an included file,
-/// which is told where that file is open.
+/// A finding, and the text it is about: the document's or an included one.
 pub(crate) fn diagnostic(
     document: &Document,
     finding: &Finding,
     client: &ClientProfile,
-) -> Option<Diagnostic> {
-    if finding.file != FileId::MAIN {
-        return None;
-    }
+) -> Option<(Url, Diagnostic)> {
+    let place = location(document, finding.file, finding.range, client)?;
     let related = finding.related.iter().filter_map(|related| {
         let location = location(document, related.file, related.range, client)?;
         Some(DiagnosticRelatedInformation { location, message: related.message.clone() })
     });
-    Some(Diagnostic {
-        range: range(&document.text, finding.range, client.encoding),
+    let diagnostic = Diagnostic {
+        range: place.range,
         severity: Some(match finding.severity {
             Severity::Error => DiagnosticSeverity::ERROR,
             Severity::Warning => DiagnosticSeverity::WARNING,
@@ -42,7 +39,8 @@ pub(crate) fn diagnostic(
         message: finding.message.clone(),
         related_information: client.related_information.then(|| related.collect()),
         ..Diagnostic::default()
-    })
+    };
+    Some((place.uri, diagnostic))
 }
 
 /// A place in the text or in one of its includes; `None` for the standard

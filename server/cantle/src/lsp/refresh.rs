@@ -4,14 +4,15 @@
 //! ready; both with the version they speak of, and neither once the text has
 //! moved on.
 
+use std::collections::{BTreeMap, BTreeSet};
 use std::sync::Arc;
 
 use operator::Budget;
-use program::Finding;
 use tower_lsp::lsp_types::notification::PublishDiagnostics;
 use tower_lsp::lsp_types::{Diagnostic, DiagnosticSeverity, PublishDiagnosticsParams, Range, Url};
 
-use super::{Document, Lane, Session};
+use super::session::World;
+use super::{Document, Lane, Session, locked};
 use crate::convert;
 use crate::error::Fail;
 
@@ -40,8 +41,8 @@ pub(super) fn start(session: &Arc<Session>, document: Arc<Document>) {
     });
 }
 
-fn names(document: &Document, budget: &Budget) {
-    document.names.get_or_init(|| crate::checks::names(document.program(), budget));
+fn names(document: &Document, _: &Budget) {
+    document.names.get_or_init(|| crate::checks::names(document.program()));
 }
 
 fn operators(document: &Document, budget: &Budget) {
@@ -52,15 +53,24 @@ fn operators(document: &Document, budget: &Budget) {
     }
 }
 
-/// Publishes what is known, unless the text has moved on.
+/// What was last said about included files, by the text that includes them.
+#[derive(Debug, Default)]
+pub(super) struct Foreign(BTreeMap<Url, ByFile>);
+
+type ByFile = BTreeMap<Url, Vec<Diagnostic>>;
+
+/// Publishes what is known, unless the text has moved on. What is wrong with
+/// an included file is said there.
 fn publish(session: &Session, document: &Arc<Document>) {
     let client = session.client();
-    let known: Vec<&Finding> = document.findings().collect();
-    let diagnostics = known
-        .into_iter()
-        .filter_map(|finding| convert::diagnostic(document, finding, &client))
-        .collect();
-    send(session, document, diagnostics);
+    let mut by_file = ByFile::new();
+    by_file.insert(document.uri.clone(), Vec::new());
+    for finding in document.findings() {
+        if let Some((uri, diagnostic)) = convert::diagnostic(document, finding, &client) {
+            by_file.entry(uri).or_default().push(diagnostic);
+        }
+    }
+    send(session, document, by_file);
 }
 
 /// Says that we broke down over this text; the others are still served.
@@ -74,20 +84,52 @@ fn confess(session: &Session, document: &Arc<Document>) {
             .into(),
         ..Diagnostic::default()
     };
-    send(session, document, vec![diagnostic]);
+    send(session, document, ByFile::from([(document.uri.clone(), vec![diagnostic])]));
 }
 
-fn send(session: &Session, document: &Arc<Document>, diagnostics: Vec<Diagnostic>) {
-    session.while_newest(document, || {
-        let (uri, version) = (document.uri.clone(), Some(document.version));
-        let params = PublishDiagnosticsParams { uri, version, diagnostics };
-        session.outbox.notify::<PublishDiagnostics>(params);
+fn send(session: &Session, document: &Arc<Document>, mut by_file: ByFile) {
+    session.while_newest(document, |world| {
+        let own = by_file.remove(&document.uri).unwrap_or_default();
+        notify(session, &document.uri, Some(document.version), own);
+        tell_foreign(session, world, &document.uri, by_file);
     });
 }
 
-/// Takes back what was said about a text that is no longer open.
-pub(super) fn clear(session: &Session, uri: &Url) {
-    let params =
-        PublishDiagnosticsParams { uri: uri.clone(), version: None, diagnostics: Vec::new() };
+/// Replaces what one text said about its includes, and publishes the union of
+/// what all texts say about each of them. Open ones speak for themselves.
+fn tell_foreign(session: &Session, world: &World, includer: &Url, by_file: ByFile) {
+    let mut foreign = locked(&session.foreign);
+    let mut touched: BTreeSet<Url> = by_file.keys().cloned().collect();
+    touched.extend(foreign.0.remove(includer).into_iter().flat_map(BTreeMap::into_keys));
+    if !by_file.is_empty() {
+        foreign.0.insert(includer.clone(), by_file);
+    }
+    for uri in touched {
+        // Made from our own name of the file: no need to ask the disk again.
+        let path = uri.to_file_path().unwrap_or_default();
+        let path = path.to_string_lossy();
+        if world.documents.values().any(|document| *document.path == *path) {
+            continue;
+        }
+        let said = foreign.0.values().filter_map(|by_file| by_file.get(&uri));
+        let mut union: Vec<Diagnostic> = Vec::new();
+        for diagnostic in said.flatten() {
+            if !union.contains(diagnostic) {
+                union.push(diagnostic.clone());
+            }
+        }
+        notify(session, &uri, None, union);
+    }
+}
+
+/// Takes back what was said about a text that is no longer open, and what it
+/// said about its includes.
+pub(super) fn clear(session: &Session, world: &World, uri: &Url) {
+    notify(session, uri, None, Vec::new());
+    tell_foreign(session, world, uri, ByFile::new());
+}
+
+fn notify(session: &Session, uri: &Url, version: Option<i32>, diagnostics: Vec<Diagnostic>) {
+    let params = PublishDiagnosticsParams { uri: uri.clone(), version, diagnostics };
     session.outbox.notify::<PublishDiagnostics>(params);
 }

@@ -14,6 +14,7 @@ use super::lanes::Lanes;
 use super::memo::Memo;
 use super::outbox::Outbox;
 use super::pending::Pending;
+use super::refresh::Foreign;
 use super::{ClientProfile, Document, locked, refresh};
 use crate::config::Settings;
 use crate::convert;
@@ -30,6 +31,7 @@ pub(crate) struct Session {
     /// Candidates by what they were made for.
     pub outcomes: Memo<Encoding, encode::Outcome>,
     pub(super) pending: Pending,
+    pub(super) foreign: Mutex<Foreign>,
     state: Mutex<State>,
 }
 
@@ -115,13 +117,19 @@ impl Session {
             lanes: Lanes::default(),
             outcomes: Memo::default(),
             pending: Pending::default(),
+            foreign: Mutex::default(),
             state: Mutex::default(),
         }
     }
 
+    /// Everything there is to read, at this moment.
+    fn world(&self) -> World {
+        locked(&self.state).world.clone()
+    }
+
     /// What a request that arrives now sees.
     pub(super) fn context(self: &Arc<Self>) -> Context {
-        let world = locked(&self.state).world.clone();
+        let world = self.world();
         let budget = Arc::new(world.settings.budget());
         Context { world, budget, session: self.clone() }
     }
@@ -225,18 +233,18 @@ impl Session {
         };
         if let Some(before) = before {
             before.end();
-            refresh::clear(self, uri);
+            refresh::clear(self, &self.world(), uri);
             self.renew(|other| other.depends_on(&before.path));
         }
     }
 
     /// Runs `act` if `document` still is the newest state of its text, and
     /// keeps it newest meanwhile: nothing stale is ever published.
-    pub(crate) fn while_newest(&self, document: &Arc<Document>, act: impl FnOnce()) {
+    pub(crate) fn while_newest(&self, document: &Arc<Document>, act: impl FnOnce(&World)) {
         let state = locked(&self.state);
         let newest = state.world.documents.get(&document.uri);
         if newest.is_some_and(|newest| Arc::ptr_eq(newest, document)) {
-            act();
+            act(&state.world);
         }
     }
 

@@ -84,7 +84,7 @@ fn quick_fixes(
         finding.fixes.iter().map(move |fix| CodeAction {
             title: fix.title.clone(),
             kind: Some(CodeActionKind::QUICKFIX),
-            diagnostics: diagnostic.clone().map(|diagnostic| vec![diagnostic]),
+            diagnostics: diagnostic.clone().map(|(_, diagnostic)| vec![diagnostic]),
             edit: Some(convert::workspace_edit(document, &fix.edits, client)),
             is_preferred: Some(best),
             ..CodeAction::default()

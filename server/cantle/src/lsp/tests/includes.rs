@@ -66,3 +66,25 @@ async fn a_text_that_is_no_file_is_served() {
     editor.open_at("untitled:Untitled-1", "OPENQASM 3.0;\nqubit a;\nnowhere a;\n").await;
     assert_eq!(codes(&mut editor, "untitled:Untitled-1").await, ["unknown-name"]);
 }
+
+#[tokio::test]
+async fn what_is_wrong_with_an_include_is_said_there_while_it_is_not_open() {
+    let home = tempfile::tempdir().expect("a directory");
+    std::fs::write(home.path().join("bench.inc"), "gate warm a { nowhere a; }\n").expect("written");
+    let (main, bench) = (file(home.path(), "main.qasm"), file(home.path(), "bench.inc"));
+    let mut editor = Editor::start(json!({})).await;
+    editor.open_at(&main, MAIN).await;
+    assert_eq!(codes(&mut editor, &main).await, Vec::<String>::new());
+    assert_eq!(codes(&mut editor, &bench).await, ["unknown-name"]);
+    // Once open, it speaks for itself; closed, its includer speaks again.
+    editor.open_at(&bench, "gate warm a {}\n").await;
+    assert_eq!(codes(&mut editor, &bench).await, Vec::<String>::new());
+    assert_eq!(codes(&mut editor, &main).await, Vec::<String>::new());
+    editor.tell("textDocument/didClose", json!({ "textDocument": { "uri": bench } })).await;
+    assert_eq!(codes(&mut editor, &bench).await, ["unknown-name"]);
+    // The includer is closed: nothing is left.
+    editor.tell("textDocument/didClose", json!({ "textDocument": { "uri": main } })).await;
+    let cleared =
+        |m: &Value| m["params"]["uri"] == bench.as_str() && m["params"]["diagnostics"] == json!([]);
+    editor.wait(cleared).await;
+}
