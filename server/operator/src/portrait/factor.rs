@@ -19,7 +19,8 @@ pub(super) fn controlled(matrix: &Matrix, wires: usize, tolerance: f64) -> Optio
         }
         for on in [true, false] {
             if equal(&of(!on, !on), &identity, tolerance) {
-                let inner = Box::new(portrait(&of(on, on)));
+                let others: Vec<usize> = (0..wires).filter(|&other| other != wire).collect();
+                let inner = Box::new(portrait(&of(on, on)).placed(&others));
                 return Some(Portrait::Controlled { wire, on, inner });
             }
         }
@@ -39,11 +40,8 @@ pub(super) fn tensor(matrix: &Matrix, tolerance: f64) -> Option<Portrait> {
 
 /// The portrait of a factor, taken apart further, on the whole's wires.
 fn placed(matrix: &Matrix, wires: &[usize]) -> Vec<(Vec<usize>, Portrait)> {
-    match portrait(matrix) {
-        Portrait::Tensor(factors) => factors
-            .into_iter()
-            .map(|(own, factor)| (own.iter().map(|&wire| wires[wire]).collect(), factor))
-            .collect(),
+    match portrait(matrix).placed(wires) {
+        Portrait::Tensor(factors) => factors,
         whole => vec![(wires.to_vec(), whole)],
     }
 }

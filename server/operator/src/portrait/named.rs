@@ -1,75 +1,73 @@
-//! Pauli strings and gates of the standard library, up to a global phase.
+//! Gates of the standard library, up to a global phase.
 
 use std::sync::Arc;
 
 use super::{Portrait, SAME, phase_between};
 use crate::{Budget, C64, Circuit, Control, Gate, Matrix, evaluate, gate_matrix};
 
-/// e^{iγ} times a Pauli string.
-pub(super) fn pauli(matrix: &Matrix, wires: usize, tolerance: f64) -> Option<Portrait> {
-    // Column 0 of a string has one entry, in the row whose bits are its X
-    // and Y letters; the signs of the columns 2ᵏ are those of its Z and Y.
-    let flips = (0..matrix.rows()).find(|&r| matrix[(r, 0)].norm() > tolerance)?;
-    let lead = matrix[(flips, 0)];
-    if (lead.norm() - 1.0).abs() > tolerance {
-        return None;
-    }
-    let mut letters = String::new();
-    let mut turn = C64::ONE;
-    for wire in 0..wires {
-        let bit = 1 << (wires - 1 - wire);
-        let signed = (matrix[(flips ^ bit, bit)] / lead).re < 0.0;
-        letters.push(match (flips & bit != 0, signed) {
-            (false, false) => 'I',
-            (false, true) => 'Z',
-            (true, false) => 'X',
-            (true, true) => {
-                turn *= C64::I;
-                'Y'
-            }
-        });
-    }
-    let minus = letter_mask(&letters, "ZY");
-    let string = Matrix::from_fn(matrix.rows(), matrix.cols(), |r, c| {
-        let sign = if (c & minus).count_ones().is_multiple_of(2) { 1.0 } else { -1.0 };
-        if r == c ^ flips { turn * sign } else { C64::ZERO }
-    });
-    let phase = phase_between(matrix, &string, tolerance)?;
-    Some(Portrait::Pauli { phase, letters })
-}
-
-/// The bits of the wires whose letter is one of `of`.
-fn letter_mask(letters: &str, of: &str) -> usize {
-    letters.chars().fold(0, |mask, letter| mask << 1 | usize::from(of.contains(letter)))
-}
-
 /// e^{iγ} times a gate of the standard library on exactly these wires; one
-/// without a phase if there is one.
+/// without a phase if there is one, and in the given order if it fits.
 pub(super) fn named(matrix: &Matrix, wires: usize, tolerance: f64) -> Option<Portrait> {
+    let mut best = None;
+    for order in ORDERS.iter().filter(|order| order.len() == wires) {
+        let turned = reordered(matrix, order);
+        for (phase, gate, angle) in in_order(&turned, wires, tolerance) {
+            let found = Portrait::Named { phase, wires: order.to_vec(), gate, angle };
+            if phase == 0.0 {
+                return Some(found);
+            }
+            best = best.or(Some(found));
+        }
+    }
+    best
+}
+
+/// Orders in which a gate may take one, two or three wires.
+const ORDERS: [&[usize]; 9] = [
+    &[0],
+    &[0, 1],
+    &[1, 0],
+    &[0, 1, 2],
+    &[0, 2, 1],
+    &[1, 0, 2],
+    &[1, 2, 0],
+    &[2, 0, 1],
+    &[2, 1, 0],
+];
+
+/// The matrix with wire `order[k]` as its wire `k`.
+fn reordered(matrix: &Matrix, order: &[usize]) -> Matrix {
+    let top = order.len() - 1;
+    let place = |index: usize| {
+        let bits = order.iter().enumerate().filter(|(k, _)| index >> (top - k) & 1 == 1);
+        bits.map(|(_, wire)| 1 << (top - wire)).sum::<usize>()
+    };
+    Matrix::from_fn(matrix.rows(), matrix.cols(), |r, c| matrix[(place(r), place(c))])
+}
+
+/// Phases, names and angles of the gates that a matrix is.
+fn in_order(
+    matrix: &Matrix,
+    wires: usize,
+    tolerance: f64,
+) -> Vec<(f64, &'static str, Option<f64>)> {
     let fixed = FIXED.iter().map(|(name, controls, gate)| (*name, *controls, gate.clone(), None));
     let turned = TURNED.iter().filter(|(_, controls, _)| controls + 1 == wires);
     let turned = turned.map(|(name, controls, gate)| {
         let angle = angle(matrix, wires, gate);
         (*name, *controls, gate(angle), Some(angle))
     });
-    let mut best = None;
-    for (name, controls, gate, angle) in fixed.chain(turned) {
-        if controls + gate.wires() != wires {
-            continue;
-        }
-        let standard = controlled(&gate, controls)?;
-        let Some(phase) = phase_between(matrix, &standard, tolerance) else { continue };
-        let found = Portrait::Named { phase, gate: name, angle };
-        if phase == 0.0 {
-            return Some(found);
-        }
-        best = best.or(Some(found));
-    }
-    best
+    let fits =
+        fixed.chain(turned).filter(|(_, controls, gate, _)| controls + gate.wires() == wires);
+    let found = fits.filter_map(|(name, controls, gate, angle)| {
+        let phase = phase_between(matrix, &*controlled(&gate, controls)?, tolerance)?;
+        Some((phase, name, angle))
+    });
+    found.collect()
 }
 
 /// Gates without a parameter: name, controls, gate.
-const FIXED: [(&str, usize, Gate); 12] = [
+const FIXED: [(&str, usize, Gate); 13] = [
     ("h", 0, Gate::H),
     ("s", 0, Gate::S),
     ("sdg", 0, Gate::Sdg),
@@ -82,6 +80,7 @@ const FIXED: [(&str, usize, Gate); 12] = [
     ("ch", 1, Gate::H),
     ("swap", 0, Gate::Swap),
     ("ccx", 2, Gate::X),
+    ("cswap", 1, Gate::Swap),
 ];
 
 type Turn = (&'static str, usize, fn(f64) -> Gate);

@@ -66,7 +66,7 @@ fn modifiers_and_loops_are_part_of_a_call() {
             1  0
             Rows and columns in operand order: `a` is the most significant bit
             Cost: CX 0 · one-qubit 1 · two-qubit 0 · larger 0 · depth 1 (two-qubit 0)
-            The first of the 4 calls made here: permutation
+            The first of the 4 calls made here: negctrl[0] @ Pauli X
             0  1  0  0
             1  0  0  0
             0  0  1  0
@@ -197,7 +197,7 @@ fn hints_are_one_line_each() {
         gate flip a  Pauli X
         gate shown(by) a  rx(0.3) at by = 0.3
         gate wrong a  ≠ x, error 1.4e0
-        gate right a  ≈ x, error 2.2e-16
+        gate right a  ≈ x, error 0
         gate lost a  not checked: equals `nothing` up to a global phase
         gate nested a, b  Pauli X[0] ⊗ h[1]"#]]
     .assert_eq(&lines.join("\n"));
