@@ -15,8 +15,9 @@ const UNITARY: f64 = 1e-9;
 const BRANCH_MARGIN: f64 = 1e-9;
 
 /// Most wires of an operator that a broken power is taken of: its eigenvectors
-/// take about `8ⁿ` operations, which nothing can interrupt.
-const BROKEN_WIRES: usize = 9;
+/// take some `8ⁿ` operations, a few tenths of a second at this size, which
+/// nothing can interrupt.
+const BROKEN_WIRES: usize = 8;
 
 /// Operators of definitions on at most this many wires are kept: one MiB each.
 const KEPT_WIRES: usize = 8;
