@@ -18,9 +18,13 @@ mod text;
 /// angle that a person writes.
 const SAME: f64 = 1e-12;
 
-/// Most wires whose operator is searched for structure: the search for
-/// factors may look at all `4ⁿ` entries for each of `2ⁿ` partitions.
-const MAX_WIRES: usize = 8;
+/// Most wires whose operator is looked at: each look reads `4ⁿ` entries.
+const MAX_WIRES: usize = 10;
+
+/// Most wires whose operator is searched for parts: the search for factors
+/// may look at all `4ⁿ` entries for each of `2ⁿ` partitions, that for
+/// reflections multiplies.
+const MAX_SEARCHED: usize = 8;
 
 /// What an operator is. Angles are radians.
 #[derive(Debug, Clone, PartialEq)]
@@ -106,8 +110,12 @@ pub fn portrait(matrix: &Matrix) -> Portrait {
         .or_else(|| pauli::string(matrix, wires, tolerance))
         .or_else(|| pauli::rotation(matrix, wires, tolerance))
         .or_else(|| named::named(matrix, wires, tolerance))
-        .or_else(|| composed(matrix, wires, tolerance))
-        .or_else(|| reflection(matrix, tolerance))
+        .or_else(|| match wires {
+            0..=MAX_SEARCHED => {
+                composed(matrix, wires, tolerance).or_else(|| reflection(matrix, tolerance))
+            }
+            _ => sparse(matrix, tolerance),
+        })
         .unwrap_or(plain)
 }
 

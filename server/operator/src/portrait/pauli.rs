@@ -24,7 +24,9 @@ pub(super) fn rotation(matrix: &Matrix, wires: usize, tolerance: f64) -> Option<
     let string = operator(&letters);
     let size = matrix.rows() as f64;
     let even = matrix.trace() / size;
-    let odd = (&string * matrix).trace() / size;
+    // tr(P†M), entry by entry.
+    let pairs = string.as_slice().iter().zip(matrix.as_slice());
+    let odd = pairs.map(|(p, m)| p.conj() * m).sum::<C64>() / size;
     // Both coefficients share the phase; a real one of I is given none.
     let lead = if even.norm() > tolerance { even / even.norm() } else { return None };
     let turn = if even.im.abs() <= tolerance { C64::ONE } else { lead };

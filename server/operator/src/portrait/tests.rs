@@ -222,3 +222,12 @@ fn structure_is_found_wherever_the_wires_are() {
         assert_eq!((wire, *inner), (a, Portrait::Plain { rows: 8, cols: 8 }));
     }
 }
+
+#[test]
+fn large_operators_are_looked_at_but_not_searched() {
+    let idle = |_: &mut Circuit| {};
+    assert_eq!(shown(9, idle), "identity");
+    assert_eq!(shown(9, |c| c.push(Gate::Y, &[8])), "Pauli IIIIIIIIY");
+    assert_eq!(shown(9, |c| c.cx(0, 8)), "permutation");
+    assert_eq!(shown(9, |c| c.push(Gate::H, &[8])), "512×512 matrix");
+}
